@@ -1,0 +1,1 @@
+"""What results say about targets, trade-offs and choices."""

@@ -1,0 +1,1 @@
+"""What is handed in: figures, tables, documents and the run record."""

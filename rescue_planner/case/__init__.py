@@ -1,0 +1,1 @@
+"""What the user describes: frozen, validated types with units, edits, and the case file."""

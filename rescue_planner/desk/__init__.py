@@ -1,0 +1,1 @@
+"""The Qt front end. Nothing below it imports Qt."""

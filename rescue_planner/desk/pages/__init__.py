@@ -1,0 +1,1 @@
+"""The pages of the desk. They do not know each other."""

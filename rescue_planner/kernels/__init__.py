@@ -1,0 +1,1 @@
+"""Compiled inner loops on plain arrays; the plain twins live in `theory`."""

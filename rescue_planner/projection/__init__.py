@@ -1,0 +1,1 @@
+"""Case and plan to measures over time, at the depths of projection."""

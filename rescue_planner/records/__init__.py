@@ -1,0 +1,1 @@
+"""Genotype tables, pedigrees, counts and sheets: reading, checking, summarising."""

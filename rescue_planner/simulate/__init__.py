@@ -1,0 +1,1 @@
+"""The animal-by-animal engine: takes plain arrays, knows `theory` and `kernels`."""

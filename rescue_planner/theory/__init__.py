@@ -1,0 +1,1 @@
+"""Published formulas as pure functions on numbers and arrays."""
