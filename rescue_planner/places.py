@@ -1,0 +1,57 @@
+"""Where things lie, and what must be set before numpy or numba is imported."""
+
+from __future__ import annotations
+
+import os
+from pathlib import Path
+
+import platformdirs
+
+_APP = "rescue-planner"
+_PACKAGE = Path(__file__).resolve().parent
+
+
+def _shipped(name: str) -> Path:
+    """Return a shipped folder: inside the package in a wheel, one folder up in a checkout."""
+    inside = _PACKAGE / name
+    if inside.is_dir():
+        return inside
+    above = _PACKAGE.parent
+    if (above / "pyproject.toml").is_file() and (above / name).is_dir():
+        return above / name
+    raise FileNotFoundError(f"The installation lacks its folder {name!r}; install it again.")
+
+
+def resources() -> Path:
+    """Return the folder of icons, style sheets and offline help."""
+    return _shipped("resources")
+
+
+def scenarios() -> Path:
+    """Return the folder of the invented cases that ship."""
+    return _shipped("scenarios")
+
+
+def user_state() -> Path:
+    """Return the user's folder for recent files and recovery copies (not created here)."""
+    return Path(platformdirs.user_state_dir(_APP, appauthor=False))
+
+
+def user_documents() -> Path:
+    """Return where a file dialog starts."""
+    return Path(platformdirs.user_documents_dir())
+
+
+def kernel_cache() -> Path:
+    """Return the user's folder for compiled kernels (not created here)."""
+    return Path(platformdirs.user_cache_dir(_APP, appauthor=False)) / "kernels"
+
+
+def prepare_numerics() -> None:
+    """Ask numeric libraries for one thread each; call before numpy is imported.
+
+    Workers of our own share the cores; a library that starts its own threads beside them makes
+    both slower.
+    """
+    for name in ("OMP_NUM_THREADS", "OPENBLAS_NUM_THREADS", "MKL_NUM_THREADS"):
+        os.environ.setdefault(name, "1")
