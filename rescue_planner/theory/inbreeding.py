@@ -108,7 +108,7 @@ def rescue_ratio(
     Shapes (...); B per *diploid* animal. Both F homogeneous: right after a release use
     `young_survival`.
     """
-    fall = np.maximum(0.0, floats(f_before)) - np.maximum(0.0, floats(f_after))
+    fall: FloatArray = np.maximum(0.0, floats(f_before)) - np.maximum(0.0, floats(f_after))
     return np.exp(0.5 * floats(lethal_equivalents_diploid) * fall)
 
 
