@@ -141,7 +141,7 @@ class Steady(Part):
     ]
     from_year: Annotated[Quantity | None, _year("From", "First year; left out, the start.")] = None
     to_year: Annotated[
-        Quantity | None, _year("To", "Last year, itself included; left out, the horizon.")
+        Quantity | None, _year("To", "Last year, itself included; left out, for good.")
     ] = None
 
 

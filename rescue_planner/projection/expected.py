@@ -1,0 +1,311 @@
+"""The expected depth: the average course of one plan, as closed recursions.
+
+Axes: n parameter draws, D donors, G steps. Order in a step: rules, releases join the breeders,
+breeding, selection among the young, mutation, drift. Sources stand in the functions of `theory`.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from rescue_planner.projection import trait_course
+from rescue_planner.projection.growth import Effects, yearly_growth
+from rescue_planner.projection.rules import RuleBook, act, open_book
+from rescue_planner.projection.setup import Setup
+from rescue_planner.projection.trait_course import Mixing, TraitState
+from rescue_planner.theory import diversity as div
+from rescue_planner.theory import flow, inbreeding, selection
+from rescue_planner.theory.trait import sustainable_shift
+
+FloatArray = NDArray[np.float64]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Step:
+    """What one step used: shares of mothers, fathers and gene copies (n, D), Ne (n,)."""
+
+    mothers: FloatArray
+    fathers: FloatArray
+    shares: FloatArray
+    newcomers: FloatArray
+    ne: FloatArray
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Course:
+    """One plan's average course.
+
+    `values` maps a measure to (n, G + 1). `between` (G + 1, n, D) and `donors` (G + 1, n, D, D)
+    are the diversities at each t; `capped` marks the t at which first-year survival met 1.
+    """
+
+    setup: Setup
+    values: dict[str, FloatArray]
+    steps: tuple[Step, ...]
+    between: FloatArray
+    donors: FloatArray
+    capped: NDArray[np.bool_]
+    book: RuleBook
+
+
+@dataclass(slots=True, eq=False)
+class _State:
+    """The state at one t; arrays are (n,), between and ancestry (n, D), donors (n, D, D)."""
+
+    h: FloatArray
+    between: FloatArray
+    donors: FloatArray
+    ancestry: FloatArray
+    relative_survival: FloatArray
+    adults: FloatArray
+    loci: list[FloatArray]
+    trait: TraitState | None
+    released: FloatArray
+    migrants: FloatArray
+    cost: FloatArray
+
+
+class _Walk:
+    """Carries one plan from t = 0 to G; the only mutable thing in this module."""
+
+    def __init__(self, setup: Setup) -> None:
+        self.setup = setup
+        self.state = self._start()
+        self.book = open_book(setup)
+        self.effects_at_start = self._effects(0)
+        self.rows: list[dict[str, FloatArray]] = []
+        self.steps: list[Step] = []
+        self.between: list[FloatArray] = []
+        self.donors: list[FloatArray] = []
+        self.capped: list[NDArray[np.bool_]] = []
+
+    def run(self) -> Course:
+        """Walk all steps."""
+        for t in range(self.setup.steps + 1):
+            self._record(t)
+            if t < self.setup.steps:
+                self._advance(t)
+        rows = {key: np.stack([row[key] for row in self.rows], axis=-1) for key in self.rows[0]}
+        return Course(
+            self.setup,
+            rows,
+            tuple(self.steps),
+            np.stack(self.between),
+            np.stack(self.donors),
+            np.stack(self.capped),
+            self.book,
+        )
+
+    def _start(self) -> _State:
+        given = self.setup
+        h = given.distances.recipient
+        zero = np.zeros(given.draws)
+        f = inbreeding.inbreeding(h, given.h_reference)
+        return _State(
+            h=h,
+            between=given.distances.between,
+            donors=given.distances.donors,
+            ancestry=given.ancestry,
+            relative_survival=np.asarray(inbreeding.survival_factor(f, given.lethal_first_year)),
+            adults=given.adults,
+            loci=[locus.frequency for locus in given.loci],
+            trait=None if given.trait is None else trait_course.trait_start(given.trait),
+            released=zero,
+            migrants=zero,
+            cost=zero,
+        )
+
+    # what is read at t
+
+    def _lag(self, t: int) -> FloatArray:
+        given, state = self.setup, self.state
+        assert given.trait is not None
+        assert state.trait is not None
+        years = t * given.generation_years
+        return trait_course.optimum(given.trait, years, given.start_year) - state.trait.mean
+
+    def _trait_fitness(self, lag: FloatArray | float) -> FloatArray:
+        given, state = self.setup.trait, self.state.trait
+        if given is None or state is None:
+            return np.ones(self.setup.draws)
+        return trait_course.fitness(given, state, lag)
+
+    def _effects(self, t: int, at_optimum: bool = False) -> Effects:
+        given, state = self.setup, self.state
+        lag: FloatArray | float = 0.0 if at_optimum or given.trait is None else self._lag(t)
+        f = inbreeding.inbreeding(state.h, given.h_reference)
+        return Effects(
+            inbreeding=state.relative_survival,
+            trait=self._trait_fitness(lag),
+            actions=given.schedule.first_year_times[t],
+            young=np.asarray(inbreeding.survival_factor(f, given.lethal_young)),
+        )
+
+    def _growth(self, t: int, at_optimum: bool = False) -> tuple[FloatArray, NDArray[np.bool_]]:
+        life = self.setup.life
+        assert life is not None
+        start = self.effects_at_start
+        if not life.here_now:
+            start = Effects(start.inbreeding, self._trait_fitness(0.0), start.actions, start.young)
+        result = yearly_growth(life, self._effects(t, at_optimum), start)
+        return result.rate, result.capped
+
+    def _record(self, t: int) -> None:
+        given, state = self.setup, self.state
+        row: dict[str, FloatArray] = {}
+        capped = np.zeros(given.draws, dtype=bool)
+        if given.life is not None:
+            row["adults"] = state.adults
+        row["gene_diversity"] = state.h
+        row["gene_diversity_kept"] = state.h / given.distances.recipient
+        row["inbreeding"] = np.asarray(inbreeding.inbreeding(state.h, given.h_reference))
+        row["relative_first_year_survival"] = state.relative_survival
+        row["donor_ancestry"] = state.ancestry.sum(axis=-1)
+        for i, name in enumerate(given.donors):
+            row[f"donor_ancestry:{name}"] = state.ancestry[:, i]
+        if given.life is not None:
+            row["yearly_growth"], capped = self._growth(t)
+        self._record_trait(t, row)
+        for locus, frequency in zip(given.loci, state.loci, strict=True):
+            row[f"allele_frequency:{locus.name}"] = frequency
+        row["released"] = state.released
+        row["effective_migrants"] = state.migrants
+        row["cost"] = state.cost
+        self.rows.append(row)
+        self.between.append(state.between)
+        self.donors.append(state.donors)
+        self.capped.append(capped)
+
+    def _record_trait(self, t: int, row: dict[str, FloatArray]) -> None:
+        given, state = self.setup.trait, self.state.trait
+        if given is None or state is None:
+            return
+        row["additive_variance_kept"] = state.additive / given.heritability
+        row["trait_mean"] = state.mean
+        row["trait_lag"] = self._lag(t)
+        if self.setup.life is not None:
+            with np.errstate(divide="ignore"):  # no growth at all: no shift can be followed
+                log_growth = np.log(self._growth(t, at_optimum=True)[0])
+            r_max = np.maximum(0.0, self.setup.generation_years * log_growth)
+            row["sustainable_shift"] = np.asarray(
+                sustainable_shift(
+                    state.additive, trait_course.environmental(given), given.width2, r_max
+                )
+            )
+
+    # the step from t to t + 1
+
+    def _size_factor(self) -> FloatArray | None:
+        if not self.setup.size_follows_adults:
+            return None
+        return self.state.adults / self.setup.adults
+
+    def _flow(self, t: int) -> Step:
+        given, plan = self.setup, self.setup.schedule
+        going = (~self.book.stopped).astype(np.float64)[:, None]
+        females = (plan.newcomer_females[t] + plan.steady[t]) * going
+        males = (plan.newcomer_males[t] + plan.steady[t]) * going
+        factor = self._size_factor()
+        if factor is None:
+            breeders_f, breeders_m = given.females, given.males
+            ne = given.size * plan.size_times[t]
+        else:
+            breeders_f = np.maximum(given.females * factor, 0.5)
+            breeders_m = np.maximum(given.males * factor, 0.5)
+            ne = np.maximum(given.size * factor, 1.0)
+        mothers = np.asarray(flow.parent_shares(females, breeders_f))
+        fathers = np.asarray(flow.parent_shares(males, breeders_m))
+        shares = np.asarray(flow.gene_copy_shares(mothers, fathers))
+        return Step(mothers, fathers, shares, (females + males).sum(axis=-1), ne)
+
+    def _advance(self, t: int) -> None:
+        given, state, plan = self.setup, self.state, self.setup.schedule
+        act(self.book, given, t, self.rows[-1])
+        step = self._flow(t)
+        self.steps.append(step)
+        relative = self._young(step)
+        h_pool = np.asarray(div.pooled(state.h, state.between, state.donors, step.shares))
+        self._advance_trait(t, step, h_pool)
+        self._advance_loci(step)
+        state.h = np.asarray(div.drifted(h_pool, step.ne))
+        state.between = np.asarray(div.between_after(state.between, state.donors, step.shares))
+        state.donors = self._drifted_donors()
+        state.ancestry = np.asarray(flow.ancestry_after(state.ancestry, step.shares))
+        state.relative_survival = relative
+        going = (~self.book.stopped).astype(np.float64)
+        state.released = state.released + plan.animals[t] * going
+        state.migrants = state.migrants + step.newcomers
+        state.cost = state.cost + plan.cost[t] * going + plan.action_cost[t]
+        if given.life is not None:
+            self._advance_adults(t, plan.survivors[t] * going)
+
+    def _young(self, step: Step) -> FloatArray:
+        state = self.state
+        n, d = state.between.shape
+        whole = np.empty((n, d + 1, d + 1))
+        whole[:, 0, 0] = state.h
+        whole[:, 0, 1:] = whole[:, 1:, 0] = state.between
+        whole[:, 1:, 1:] = state.donors
+        return np.asarray(
+            inbreeding.young_survival(
+                _with_residents(step.mothers),
+                _with_residents(step.fathers),
+                whole,
+                self.setup.h_reference,
+                self.setup.lethal_first_year,
+            )
+        )
+
+    def _advance_trait(self, t: int, step: Step, h_pool: FloatArray) -> None:
+        given, state = self.setup, self.state
+        if given.trait is None or state.trait is None:
+            return
+        own = np.diagonal(state.donors, axis1=-2, axis2=-1)
+        gain = np.asarray(div.diversity_from_mixing(h_pool, state.h, own, step.shares))
+        mixing = Mixing(step.shares, gain, given.distances.recipient)
+        years = t * given.generation_years
+        best = trait_course.optimum(given.trait, years, given.start_year)
+        state.trait = trait_course.next_trait(given.trait, state.trait, mixing, best, step.ne)
+
+    def _advance_loci(self, step: Step) -> None:
+        for i, locus in enumerate(self.setup.loci):
+            mixed = flow.mixed(self.state.loci[i], locus.donor_frequency, step.shares)
+            selected = selection.after_selection(mixed, locus.fitness)
+            self.state.loci[i] = np.asarray(
+                selection.after_mutation(selected, locus.mutation_to, locus.mutation_from)
+            )
+
+    def _drifted_donors(self) -> FloatArray:
+        drifts = self.setup.donor_drifts
+        if not drifts.any():
+            return self.state.donors
+        donors = self.state.donors.copy()
+        for i in np.flatnonzero(drifts):
+            donors[:, i, i] = div.drifted(donors[:, i, i], self.setup.donor_size[:, i])
+        return donors
+
+    def _advance_adults(self, t: int, survivors: FloatArray) -> None:
+        given, state = self.setup, self.state
+        rate, _ = self._growth(t + 1)
+        adults = (state.adults + survivors) * rate**given.generation_years
+        if given.carrying_capacity is not None:
+            adults = np.minimum(
+                adults, given.carrying_capacity * given.schedule.capacity_times[t + 1]
+            )
+        state.adults = adults
+
+
+def _with_residents(shares: FloatArray) -> FloatArray:
+    """Put the residents' share before the donors': (n, D) -> (n, D + 1)."""
+    return np.concatenate([1.0 - shares.sum(axis=-1, keepdims=True), shares], axis=-1)
+
+
+def expected_course(setup: Setup) -> Course:
+    """Return the average course of one plan.
+
+    `setup.schedule` takes up the releases that rules add, so a setup serves one course.
+    """
+    return _Walk(setup).run()
