@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import Annotated, Literal
+from typing import Annotated, Final, Literal
 
 from pydantic import Field
 
@@ -14,8 +14,8 @@ from rescue_planner.case.plans import Plan
 from rescue_planner.case.population import Donor, Recipient
 from rescue_planner.case.quantity import Quantity
 
-FORMAT = "rescue case"
-VERSION = 1
+FORMAT: Final = "rescue case"
+VERSION: Final = 1
 
 
 class Decision(Part):
@@ -33,8 +33,14 @@ class Time(Part):
 
     start_year: Annotated[
         Quantity,
-        Input("Start year", "year", "The year of the state given.", whole=True, at_least=1,
-              at_most=100_000),
+        Input(
+            "Start year",
+            "year",
+            "The year of the state given.",
+            whole=True,
+            at_least=1,
+            at_most=100_000,
+        ),
     ]
     horizon_years: Annotated[
         Quantity,
@@ -94,18 +100,36 @@ class Run(Part):
 
     replicates: Annotated[
         Quantity,
-        Input("Replicates", "runs", "Simulated runs per plan.", at_least=1, at_most=1_000_000,
-              whole=True),
+        Input(
+            "Replicates",
+            "runs",
+            "Simulated runs per plan.",
+            at_least=1,
+            at_most=1_000_000,
+            whole=True,
+        ),
     ] = Field(default_factory=lambda: given(1000))
     seed: Annotated[
         Quantity,
-        Input("Seed", "", "The same seed gives the same result.", at_least=0, whole=True,
-              at_most=2**53),
+        Input(
+            "Seed",
+            "",
+            "The same seed gives the same result.",
+            at_least=0,
+            whole=True,
+            at_most=2**53,
+        ),
     ] = Field(default_factory=lambda: given(1))
     parameter_draws: Annotated[
         Quantity,
-        Input("Parameter draws", "draws", "Draws from the entered ranges.", at_least=1,
-              at_most=100_000, whole=True),
+        Input(
+            "Parameter draws",
+            "draws",
+            "Draws from the entered ranges.",
+            at_least=1,
+            at_most=100_000,
+            whole=True,
+        ),
     ] = Field(default_factory=lambda: given(1))
 
 

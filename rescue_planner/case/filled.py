@@ -48,7 +48,7 @@ def donor_frequency(locus: Locus, donor: str) -> float:
 
 
 def steps(horizon_years: float, generation_years: float) -> int:
-    """Number of steps G = ceil(horizon / T), with a tolerance of 1e-9 steps."""
+    """Return the number of steps G = ceil(horizon / T), with a tolerance of 1e-9 steps."""
     whole = horizon_years / generation_years
     nearest = round(whole)
     if abs(whole - nearest) <= TOLERANCE_STEPS:

@@ -12,7 +12,7 @@ from rescue_planner.case.quantity import FrozenMap, Quantity
 
 
 def _default(value: float) -> Quantity:
-    return Field(default_factory=lambda: given(value))  # type: ignore[no-any-return]
+    return Field(default_factory=lambda: given(value))
 
 
 def _mutation(name: str, meaning: str) -> Input:
@@ -77,7 +77,8 @@ class MildSelection(Part):
     """The gamma distribution of selection against mild harmful alleles."""
 
     mean: Annotated[
-        Quantity, Input("Mean selection", "s", "Mean loss of the homozygote.", at_least=0, at_most=1)
+        Quantity,
+        Input("Mean selection", "s", "Mean loss of the homozygote.", at_least=0, at_most=1),
     ]
     shape: Annotated[Quantity, Input("Shape", "–", "Shape of the gamma distribution.", above=0)]
 
@@ -107,7 +108,8 @@ class Load(Part):
             "Share that lethal alleles cause.",
             at_least=0,
             at_most=1,
-            published="about half of the viability load in fruit flies; little known in vertebrates",
+            published="about half of the viability load in fruit flies; little known for "
+            "vertebrates",
             source="Simmons & Crow 1977, Annu. Rev. Genet. 11:49 (from memory)",
         ),
     ] = _default(0.4)
@@ -144,13 +146,23 @@ class IncompatiblePairs(Part):
     ] = _default(0)
     loss: Annotated[
         Quantity,
-        Input("Loss per pair", "share of fitness", "Loss of the double homozygote.", at_least=0,
-              at_most=1),
+        Input(
+            "Loss per pair",
+            "share of fitness",
+            "Loss of the double homozygote.",
+            at_least=0,
+            at_most=1,
+        ),
     ] = _default(0)
     shape: Annotated[
         tuple[Quantity, Quantity],
-        Input("Shape", "share of the loss", "Loss with one and with two heterozygous loci.",
-              at_least=0, at_most=1),
+        Input(
+            "Shape",
+            "share of the loss",
+            "Loss with one and with two heterozygous loci.",
+            at_least=0,
+            at_most=1,
+        ),
     ] = Field(default_factory=lambda: (given(0), given(0.5)))
 
 
@@ -161,8 +173,13 @@ class MixingCost(Part):
     incompatible_pairs: IncompatiblePairs = IncompatiblePairs()
     chromosome_heterozygote_loss: Annotated[
         Quantity,
-        Input("Loss of chromosome heterozygotes", "share of fitness",
-              "Loss in animals that carry two forms of a chromosome.", at_least=0, at_most=1),
+        Input(
+            "Loss of chromosome heterozygotes",
+            "share of fitness",
+            "Loss in animals that carry two forms of a chromosome.",
+            at_least=0,
+            at_most=1,
+        ),
     ] = _default(0)
 
 

@@ -8,7 +8,8 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass
-from typing import Any, get_args
+from types import UnionType
+from typing import Annotated, Any, Union, get_args, get_origin
 
 from pydantic import BaseModel, GetCoreSchemaHandler, GetJsonSchemaHandler
 from pydantic_core import PydanticCustomError, core_schema
@@ -49,7 +50,7 @@ class Input:
     def complaint(self, value: float) -> str | None:
         """Return what is wrong with `value`, or nothing."""
         if self.whole and value != int(value):
-            return f"must be a whole number, got {value:g}"
+            return f"must be a whole number, got {value:.12g}"
         outside = (
             (self.at_least is not None and value < self.at_least)
             or (self.at_most is not None and value > self.at_most)
@@ -57,14 +58,30 @@ class Input:
             or (self.below is not None and value >= self.below)
         )
         unit = "" if self.unit in ("", "–") else f" ({self.unit})"
-        return f"must be {self.bounds}{unit}, got {value:g}" if outside else None
+        return f"must be {self.bounds}{unit}, got {value:.12g}" if outside else None
 
     def __get_pydantic_core_schema__(
         self,
         source: Any,  # noqa: ANN401 - pydantic's own protocol
         handler: GetCoreSchemaHandler,
     ) -> core_schema.CoreSchema:
+        inside = self._inside(source)
+        if inside is not source:  # each entry is checked, so that a problem names its own path
+            return handler(inside)
         return core_schema.no_info_after_validator_function(self._checked, handler(source))
+
+    def _inside(self, source: Any) -> Any:  # noqa: ANN401 - a type expression
+        """Return `source` with this definition put on the entries of lists and mappings."""
+        origin, entries = get_origin(source), get_args(source)
+        if origin is tuple:
+            kept = (e if e is Ellipsis else Annotated[e, self] for e in entries)
+            return tuple.__class_getitem__(tuple(kept))
+        if origin is FrozenMap:
+            mapping: Any = FrozenMap
+            return mapping[Annotated[entries[0], self]]
+        if origin in (Union, UnionType) and any(self._inside(e) is not e for e in entries):
+            return Union.__getitem__(tuple(self._inside(e) for e in entries))
+        return source
 
     def __get_pydantic_json_schema__(
         self, core: core_schema.CoreSchema, handler: GetJsonSchemaHandler

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Annotated, Literal
 
-from pydantic import Field
+from pydantic import Field, StrictBool
 
 from rescue_planner.case.base import Name, Part, Share, given
 from rescue_planner.case.inputs import Input
@@ -90,7 +90,7 @@ class Mating(Part):
             at_most=10,
         ),
     ] = Field(default_factory=lambda: given(0))
-    stay_together: bool = False
+    stay_together: StrictBool = False
 
 
 class YearlySd(Part):
@@ -165,9 +165,7 @@ class LifeCycle(Part):
     young_per_breeding_female: Young
     females_among_young: Annotated[
         Quantity,
-        Input(
-            "Females among young", "share, 0 to 1", "Share of females.", at_least=0, at_most=1
-        ),
+        Input("Females among young", "share, 0 to 1", "Share of females.", at_least=0, at_most=1),
     ] = Field(default_factory=lambda: given(0.5))
     mating: Mating = Mating()
     crowding: Literal["ceiling", "gradual"] = "ceiling"

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Collection, Iterator
 from dataclasses import dataclass
 from typing import Literal
 
@@ -209,3 +209,19 @@ def unit(key: str, currency: str | None = None) -> str:
     if measure.kind == "money" and currency:
         return measure.unit.replace("currency", currency)
     return measure.unit
+
+
+def known_key(key: str, donors: Collection[str], loci: Collection[str]) -> bool:
+    """Return whether `key` is a measure of a case with these donors and loci."""
+    base, _, of = key.partition(":")
+    measure = _BY_KEY.get(base)
+    if measure is None:
+        return False
+    if ":" not in key:
+        return measure.whole_too
+    return of in {"": (), "donor": donors, "locus": loci}[measure.per]
+
+
+def known(key: str, case: Case) -> bool:
+    """Return whether `key` is a measure that `case` can have."""
+    return known_key(key, [one.name for one in case.donors], [one.name for one in case.loci])

@@ -24,7 +24,7 @@ def _animals(name: str, meaning: str) -> Input:
 
 
 def _default(value: float) -> Quantity:
-    return Field(default_factory=lambda: given(value))  # type: ignore[no-any-return]
+    return Field(default_factory=lambda: given(value))
 
 
 class Who(Part):
@@ -104,8 +104,9 @@ class RuleRelease(Part):
     afterwards: Afterwards = Afterwards()
     loan_years: Annotated[
         Quantity | None,
-        Input("On loan for", "years", "Animals go back after so many years.", at_least=1,
-              whole=True),
+        Input(
+            "On loan for", "years", "Animals go back after so many years.", at_least=1, whole=True
+        ),
     ] = None
     cost: ReleaseCost = ReleaseCost()
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Annotated, Literal
 
-from pydantic import Field
+from pydantic import Field, StrictBool
 
 from rescue_planner.case.base import Name, Part, given
 from rescue_planner.case.inputs import Input
@@ -79,7 +79,7 @@ class Recipient(Part):
             caution="Per generation, not per breeding season. Never enter the census here.",
         ),
     ]
-    effective_size_follows_adults: bool = False
+    effective_size_follows_adults: StrictBool = False
     gene_diversity: GeneDiversity
     reference_gene_diversity: Annotated[
         Quantity,
@@ -173,7 +173,7 @@ class Donor(Part):
             at_least=1,
         ),
     ] = None
-    drifts: bool = False
+    drifts: StrictBool = False
     gene_diversity: GeneDiversity
     fst_to_recipient: Annotated[
         Quantity,

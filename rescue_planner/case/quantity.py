@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Iterator, Mapping
 from typing import Annotated, Any, Generic, Literal, TypeVar
 
@@ -31,10 +30,8 @@ def number(value: object) -> int | float:
         For text, true or false, nothing, NaN and infinities.
     """
     if isinstance(value, bool) or not isinstance(value, int | float):
-        raise PydanticCustomError(
-            "number", "must be a number, got {got}", {"got": _shown(value)}
-        )
-    if not math.isfinite(value) or abs(value) > 1e15:
+        raise PydanticCustomError("number", "must be a number, got {got}", {"got": _shown(value)})
+    if not abs(value) <= 1e15:  # NaN fails too; math.isfinite would overflow on a huge integer
         raise PydanticCustomError(
             "number", "must be a finite number below 1e15, got {got}", {"got": _shown(value)}
         )
@@ -42,6 +39,11 @@ def number(value: object) -> int | float:
 
 
 def _shown(value: object) -> str:
+    if isinstance(value, int) and not isinstance(value, bool):
+        return "a huge number"  # repr of thousands of digits is refused by Python itself
+    words = {None: "nothing", True: "true", False: "false"}
+    if value is None or isinstance(value, bool):
+        return words[value]
     text = repr(value) if not isinstance(value, str) else f'the text "{value}"'
     return text if len(text) <= 60 else text[:57] + "…"
 
@@ -127,7 +129,7 @@ class FrozenMap(Mapping[str, V], Generic[V]):
         return len(self._items)
 
     def __hash__(self) -> int:
-        return hash(tuple(self._items.items()))
+        return hash(frozenset(self._items.items()))  # equality ignores the order too
 
     def __repr__(self) -> str:
         return f"FrozenMap({self._items!r})"
