@@ -13,11 +13,12 @@ Readings, where the method leaves a choice
     s(year) <= t + 1e-9 and t < s(until_year + 1) - 1e-9; in the step [t, t+1) when
     s(year) < t + 1 - 1e-9 and t < s(until_year + 1) - 1e-9.
 3.  Gene diversities between and within donors are those before the step, in H_pool, in H_rd', in
-    the pairs of sources and in the trait's G_b; only a donor with `drifts` changes, by its own Ne,
+    the pairs of sources and in the trait's G_b. Only a donor with `drifts` changes, by its own Ne,
     and H_de between donors stays as it was. z_d and V_d use the donor's diversity at the start.
 4.  fst_to_donors: the donor that comes first in the case and states it gives value and fst_form.
-5.  A rule fires when the value is strictly above `above` or strictly below `below`, whichever are
-    given. All stop rules are looked at before any release rule of the same step; a rule is looked
+5.  A rule fires when the value is strictly above `above` or strictly below `below`, whichever is
+    given (both at once, "or" here, and neither, never here, are not settled and not compared). All
+    stop rules are looked at before any release rule of the same step; a rule is looked
     at afresh each step; a firing counts towards `at_most` even if its release falls past the end.
     Rules on a measure without an expected value here do nothing; `surveys` do nothing.
 6.  A release a rule adds comes in step floor(t + delay_years / T + 1e-9), with `who` once.
@@ -41,6 +42,8 @@ Readings, where the method leaves a choice
 17. The exact depth has the tracked loci and nothing else; the expected depth has their mean
     frequency, and nothing on keeping or fixing an allele.
 18. The relative survival at t = 0, the divisor under `here_now`, is that of mean F, without pairs.
+19. A life cycle's rates, a locus's fitness and donor frequencies, and a trait's heritability,
+    width, loci and mutational variance have no default here: they must be there.
 """
 
 import math
@@ -438,7 +441,7 @@ def step_trait(case, state, t, mixing):
     va, ve = genic + held, 1 - va_0
     w2 = number(trait["selection_width_sd"]) ** 2
     state["z"] = z + va * (optimum(case, t) - z) / (w2 + va + ve)
-    state["genic"] = kept * genic + number(trait.get("mutational_variance"), 0.0) * ve
+    state["genic"] = kept * genic + number(trait["mutational_variance"]) * ve
     state["held"] = kept * held
 
 
@@ -450,7 +453,7 @@ def mean_fitness(case, va, lag):
 
 def sustainable_shift(case, plan, state, t):
     growth = yearly_growth(case, plan, state, t, at_lag_zero=True)
-    r_max = max(0.0, generation(case) * math.log(growth))
+    r_max = max(0.0, generation(case) * math.log(growth)) if growth > 0 else 0.0
     va, ve = state["genic"] + state["held"], 1 - number(case["trait"]["heritability"])
     w2 = number(case["trait"]["selection_width_sd"]) ** 2
     return va * math.sqrt(2 * r_max / (w2 + va + ve))

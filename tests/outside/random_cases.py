@@ -19,12 +19,13 @@ HORIZONS = [  # years, years per generation
     (33, 3.3),
     (7, 0.7),
     (50, 6.2),
+    (3, 4.5),
 ]
-UNTRACKED = ["kinship", "observed_heterozygosity", "persists", "rare_alleles_kept", "load"]
+UNTRACKED = ["kinship", "observed_heterozygosity", "persists", "rare_alleles_kept", "young"]
 START = 2027
 
 
-def random_cases(count=48, seed=2027):
+def random_cases(count=55, seed=2027):
     """Return `count` pairs (name, raw case)."""
     return [(f"case {i:02d}", Draw(random.Random(1000 * seed + i), i).case()) for i in range(count)]
 
@@ -82,6 +83,9 @@ class Draw:
             case["inbreeding_cost"] = {"lethal_equivalents_diploid": lethals}
         if self.has_trait:
             case["trait"] = self.trait()
+        if self.maybe():
+            case["run"] = {"replicates": 100, "seed": 1}
+        case["targets"] = [self.target() for _ in range(2)]
         names = ["Trickle", "Waves", "Watchful", "Everything"]
         plans = [self.plan(name) for name in self.rng.sample(names, self.rng.randint(1, 4))]
         case["plans"] = [{"name": "No releases"}, *plans]
@@ -93,6 +97,8 @@ class Draw:
         adults = self.rng.randint(18, 61)
         self.adults, self.size = adults, self.rng.choice([3, 4.25, 6.3, 8, 9.5, 11, 14.7])
         self.reference, self.h = self.between(0.6, 0.75), self.between(0.25, 0.5)
+        if self.i % 11 == 7:  # more diverse than the reference: inbreeding below 0
+            self.h = self.reference + 0.03
         recipient = {
             "name": "Fen",
             "adults": self.entry(adults, 5),
@@ -128,13 +134,15 @@ class Draw:
         if self.maybe():
             donor["drifts"] = self.maybe(0.7)
         if k > 0 and self.maybe(0.6):
-            donor["fst_to_donors"] = {self.donors[k - 1]: self.between(0.02, 0.3)}
+            donor["fst_to_donors"] = {self.donors[k - 1]: self.entry(self.between(0.05, 0.3), 0.03)}
+        if k == 0 and len(self.donors) == 3 and self.maybe():
+            donor["fst_to_donors"] = {self.donors[2]: self.between(0.02, 0.3)}
         if self.maybe():
             donor["most_removed_per_year"] = 400
         if self.maybe():
             donor["trait_mean_difference"] = self.entry(self.between(-2, 2), 0.1)
         if self.maybe(0.4):
-            donor["additive_variance"] = self.rng.choice([None, self.between(0.1, 0.6)])
+            donor["additive_variance"] = self.rng.choice([None, 0.0, self.between(0.1, 0.6)])
         return donor
 
     def locus(self, name):
@@ -146,7 +154,7 @@ class Draw:
         locus = {
             "name": name,
             "role": {"stunted": "harmful", "resistance": "resistance"}.get(name, "locally adapted"),
-            "fitness": fitness,
+            "fitness": [self.entry(w, 0.0) for w in fitness],
             "frequency": self.rng.choice([0.5, 1.0, 0.0, *[self.between(0.02, 0.95)] * 5]),
             "donor_frequency": {d: self.rng.choice([0, 1, 0.35, 0.081]) for d in self.donors},
         }
@@ -195,6 +203,16 @@ class Draw:
         if self.maybe():
             trait["optimum_jump"] = {"year": self.year(), "by": self.between(-1, 1)}
         return trait
+
+    def target(self):
+        measures = ["gene_diversity_kept", "inbreeding", "donor_ancestry"]
+        if self.has_cycle:
+            measures.append("adults")
+        return {
+            "measure": self.rng.choice(measures),
+            self.rng.choice(["at_least", "at_most"]): self.between(0.1, 0.9),
+            "by_year": self.year(),
+        }
 
     # --- what is done ------------------------------------------------------------------------
 
@@ -289,7 +307,7 @@ class Draw:
             # Ne is at most the adults, and at least 3 here: three such actions leave it above 1
             action["carrying_capacity_times"] = self.rng.choice([0.8, 1.25, 1.1])
         if self.maybe(0.6):
-            action["first_year_survival_times"] = self.between(0.7, 1.4)
+            action["first_year_survival_times"] = self.rng.choice([0, self.between(0.7, 1.8)])
         if self.maybe(0.6):
             action["cost"] = self.entry(40000, 500)
         return action
