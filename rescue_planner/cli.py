@@ -121,7 +121,7 @@ def _run(asked: argparse.Namespace) -> int:
             started=started,
         )
     except ExportError as error:
-        return _complain(str(error), PROBLEMS)
+        return _complain(str(error), USAGE)
     _say(f"{case.title}: {len(comparison.plans)} plans, {len(written.files)} files in {asked.to}")
     if found:
         _say(f"{len(found)} remarks; see annex.html, or: rescue-planner check {asked.case}")
@@ -220,6 +220,6 @@ def _examples(asked: argparse.Namespace) -> int:
         return _complain(
             f"The examples could not be copied to {asked.copy_to}: {error.strerror}. "
             "Choose a folder you can write to.",
-            PROBLEMS,
+            USAGE,
         )
     return DONE

@@ -5,6 +5,7 @@ from __future__ import annotations
 import hashlib
 import json
 from collections.abc import Callable, Iterator, Sequence
+from functools import lru_cache
 
 import numpy as np
 
@@ -70,7 +71,7 @@ def compare(
     for done, name in enumerate(chosen):
         if checkpoint is not None:
             checkpoint(done, len(chosen))
-        course = expected_course(setup(case, case.plan(name)))
+        course = plan_course(case, name)
         courses.append(course)
         series.extend(_series_of(course, depths, checkpoint, (done, len(chosen))))
     start, length = float(case.time.start_year.best), float(case.time.generation_years.best)
@@ -97,6 +98,33 @@ def compare(
         not_applied=tuple(name for course in courses for name in course.book.not_applied),
         capped=tuple(c.setup.plan for c in courses if c.capped[:, 0].any()),
     )
+
+
+def plan_course(case: Case, name: str) -> Course:
+    """Return the average course of one plan; an unchanged plan is not computed again.
+
+    Raises
+    ------
+    KeyError
+        For a plan that the case does not have.
+    """
+    return _course(
+        case.model_copy(
+            update={
+                "plans": (case.plan(name),),
+                "title": "",
+                "decision": None,
+                "what_ifs": (),
+                "targets": (),
+                "answers": (),
+            }
+        )
+    )
+
+
+@lru_cache(maxsize=64)
+def _course(alone: Case) -> Course:
+    return expected_course(setup(alone, alone.plans[0]))
 
 
 def _chosen(case: Case, plans: Sequence[str] | None) -> tuple[str, ...]:

@@ -6,13 +6,13 @@ breeding, selection among the young, mutation, drift. Sources stand in the funct
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
 
 from rescue_planner.projection import trait_course
-from rescue_planner.projection.growth import Effects, yearly_growth
+from rescue_planner.projection.growth import Effects, Growth, yearly_growth
 from rescue_planner.projection.rules import RuleBook, act, open_book
 from rescue_planner.projection.setup import Setup
 from rescue_planner.projection.trait_course import Mixing, TraitState
@@ -76,6 +76,8 @@ class _Walk:
         self.state = self._start()
         self.book = open_book(setup)
         self.effects_at_start = self._effects(0)
+        self.growth: Growth | None = None
+        self._grow(0)
         self.rows: list[dict[str, FloatArray]] = []
         self.steps: list[Step] = []
         self.between: list[FloatArray] = []
@@ -133,9 +135,9 @@ class _Walk:
             return np.ones(self.setup.draws)
         return trait_course.fitness(given, state, lag)
 
-    def _effects(self, t: int, at_optimum: bool = False) -> Effects:
+    def _effects(self, t: int) -> Effects:
         given, state = self.setup, self.state
-        lag: FloatArray | float = 0.0 if at_optimum or given.trait is None else self._lag(t)
+        lag: FloatArray | float = 0.0 if given.trait is None else self._lag(t)
         f = inbreeding.inbreeding(state.h, given.h_reference)
         return Effects(
             inbreeding=state.relative_survival,
@@ -144,14 +146,21 @@ class _Walk:
             young=np.asarray(inbreeding.survival_factor(f, given.lethal_young)),
         )
 
-    def _growth(self, t: int, at_optimum: bool = False) -> tuple[FloatArray, NDArray[np.bool_]]:
+    def _grow(self, t: int) -> None:
+        """Take the growth at t, as it is (row 0) and with the trait at its optimum (row 1).
+
+        Both come from one call, and each t is computed once: the root finding costs more than
+        all the rest of a step.
+        """
         life = self.setup.life
-        assert life is not None
+        if life is None:
+            return
         start = self.effects_at_start
         if not life.here_now:
-            start = Effects(start.inbreeding, self._trait_fitness(0.0), start.actions, start.young)
-        result = yearly_growth(life, self._effects(t, at_optimum), start)
-        return result.rate, result.capped
+            start = replace(start, trait=self._trait_fitness(0.0))
+        now = self._effects(t)
+        both = replace(now, trait=np.stack([now.trait, self._trait_fitness(0.0)]))
+        self.growth = yearly_growth(life, both, start)
 
     def _record(self, t: int) -> None:
         given, state = self.setup, self.state
@@ -166,8 +175,8 @@ class _Walk:
         row["donor_ancestry"] = state.ancestry.sum(axis=-1)
         for i, name in enumerate(given.donors):
             row[f"donor_ancestry:{name}"] = state.ancestry[:, i]
-        if given.life is not None:
-            row["yearly_growth"], capped = self._growth(t)
+        if self.growth is not None:
+            row["yearly_growth"], capped = self.growth.rate[0], self.growth.capped[0]
         self._record_trait(t, row)
         for locus, frequency in zip(given.loci, state.loci, strict=True):
             row[f"allele_frequency:{locus.name}"] = frequency
@@ -186,9 +195,9 @@ class _Walk:
         row["additive_variance_kept"] = state.additive / given.heritability
         row["trait_mean"] = state.mean
         row["trait_lag"] = self._lag(t)
-        if self.setup.life is not None:
+        if self.growth is not None:
             with np.errstate(divide="ignore"):  # no growth at all: no shift can be followed
-                log_growth = np.log(self._growth(t, at_optimum=True)[0])
+                log_growth = np.log(self.growth.rate[1])
             r_max = np.maximum(0.0, self.setup.generation_years * log_growth)
             row["sustainable_shift"] = np.asarray(
                 sustainable_shift(
@@ -239,8 +248,9 @@ class _Walk:
         state.released = state.released + plan.animals[t] * going
         state.migrants = state.migrants + step.newcomers
         state.cost = state.cost + plan.cost[t] * going + plan.action_cost[t]
-        if given.life is not None:
-            self._advance_adults(t, plan.survivors[t] * going)
+        self._grow(t + 1)
+        if self.growth is not None:
+            self._advance_adults(t, plan.survivors[t] * going, self.growth.rate[0])
 
     def _young(self, step: Step) -> FloatArray:
         state = self.state
@@ -287,9 +297,8 @@ class _Walk:
             donors[:, i, i] = div.drifted(donors[:, i, i], self.setup.donor_size[:, i])
         return donors
 
-    def _advance_adults(self, t: int, survivors: FloatArray) -> None:
+    def _advance_adults(self, t: int, survivors: FloatArray, rate: FloatArray) -> None:
         given, state = self.setup, self.state
-        rate, _ = self._growth(t + 1)
         adults = (state.adults + survivors) * rate**given.generation_years
         if given.carrying_capacity is not None:
             adults = np.minimum(

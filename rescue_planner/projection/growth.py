@@ -1,4 +1,4 @@
-"""Growth of the recipient from its life cycle, its inbreeding and its trait. Shapes (n,)."""
+"""Growth of the recipient from its life cycle, its inbreeding and its trait. Shapes (..., n)."""
 
 from __future__ import annotations
 

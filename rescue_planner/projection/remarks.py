@@ -9,9 +9,9 @@ from numpy.typing import NDArray
 
 from rescue_planner.case.document import Case
 from rescue_planner.case.remarks import Remark, remarks
+from rescue_planner.projection.compare import plan_course
 from rescue_planner.projection.donor_take import donor_remarks
-from rescue_planner.projection.expected import Course, expected_course
-from rescue_planner.projection.setup import setup
+from rescue_planner.projection.expected import Course
 
 FloatArray = NDArray[np.float64]
 _SLACK = 1e-9
@@ -22,7 +22,7 @@ def every_remark(case: Case) -> tuple[Remark, ...]:
     found = list(remarks(case))
     said = {(remark.key, remark.path) for remark in found}
     for index, plan in enumerate(case.plans):
-        course = expected_course(setup(case, plan))
+        course = plan_course(case, plan.name)
         for remark in _on_course(case, f"plans[{index}]", course):
             if (remark.key, remark.path) not in said:
                 said.add((remark.key, remark.path))
@@ -81,7 +81,7 @@ def _apart(course: Course, path: str) -> Iterator[Remark]:
 
 
 def _possible(course: Course, path: str) -> Iterator[Remark]:
-    """A matrix of kinships that no set of populations could have, after t = 0."""
+    """Find kinships that no set of populations could have, after t = 0."""
     given = course.setup
     if not given.donors:
         return
