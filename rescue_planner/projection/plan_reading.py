@@ -1,0 +1,163 @@
+"""What a plan's releases and flow come to, as numbers for a screen. No Qt here."""
+
+from __future__ import annotations
+
+import itertools
+from dataclasses import dataclass
+
+import numpy as np
+
+from rescue_planner.case.document import Case
+from rescue_planner.case.filled import (
+    best,
+    breeding_females,
+    breeding_males,
+    donor_frequency,
+    step_of,
+    steps,
+)
+from rescue_planner.case.plans import Plan, RuleRelease
+from rescue_planner.projection.reading import number, year_text
+from rescue_planner.projection.results import FloatArray, read_only
+from rescue_planner.theory import flow
+
+
+@dataclass(frozen=True, slots=True)
+class Chain:
+    """What becomes of the animals of one event of a release."""
+
+    released: float
+    survive: float
+    breed: float
+
+    @property
+    def newcomers(self) -> float:
+        """Newcomers that breed, in animals that breed like residents."""
+        return float(flow.effective_newcomers(self.released, self.survive, self.breed))
+
+    def sentence(self) -> str:
+        """Return the chain as a line of numbers, such as `10 released × 0.6 × 0.4 = 2.4`."""
+        return (
+            f"{self.released:g} released × {self.survive:g} survive to breed × {self.breed:g} "
+            f"breeding = {tidy(self.newcomers)} newcomers that breed"
+        )
+
+
+def tidy(value: float) -> str:
+    """Return a small number with at most three digits after the point and no idle zeros."""
+    text = number(value, 3)
+    return text.rstrip("0").rstrip(".") if "." in text else text
+
+
+def chain(release: RuleRelease) -> Chain:
+    """Return the chain of one event of `release`."""
+    return Chain(
+        float(release.who.females.best) + float(release.who.males.best),
+        float(release.afterwards.survive_to_breed.best),
+        float(release.afterwards.breeding_relative_to_residents.best),
+    )
+
+
+@dataclass(frozen=True, slots=True)
+class EventRow:
+    """One event of a release; `release` is its index in the plan, `t` the step it falls in."""
+
+    year: int
+    release: int
+    donor: str
+    females: float
+    males: float
+    age: float | None
+    newcomers: float
+    t: int
+
+
+def event_rows(case: Case, plan: Plan) -> tuple[EventRow, ...]:
+    """Return every event of every release of a plan, in the order of years."""
+    start, generation = float(case.time.start_year.best), float(case.time.generation_years.best)
+    rows = [
+        EventRow(
+            year,
+            index,
+            release.donor,
+            float(release.who.females.best),
+            float(release.who.males.best),
+            None if release.who.age is None else float(release.who.age.best),
+            chain(release).newcomers,
+            step_of(year, start, generation),
+        )
+        for index, release in enumerate(plan.releases)
+        for year in release.years()
+    ]
+    return tuple(sorted(rows, key=lambda row: (row.year, row.release)))
+
+
+@dataclass(frozen=True, slots=True)
+class Flow:
+    """Gene flow of one generation: m, the share of gene copies, and Ne·m."""
+
+    m: float
+    ne: float
+
+    @property
+    def ne_m(self) -> float:
+        """Effective size times m."""
+        return self.ne * self.m
+
+
+def effective_size(case: Case, plan: Plan) -> float:
+    """Return the Ne at which a plan starts: its own, else the recipient's."""
+    return best(plan.effective_size, float(case.recipient.effective_size.best))
+
+
+def flow_of(case: Case, plan: Plan, females: float, males: float) -> Flow:
+    """Return the flow of newcomers that breed among the breeders the recipient starts with.
+
+    m = (u_f + u_m) / 2, u the newcomers' share of mothers and of fathers.
+    """
+    mothers = flow.parent_shares(np.array([females]), breeding_females(case.recipient))
+    fathers = flow.parent_shares(np.array([males]), breeding_males(case.recipient))
+    return Flow(float(flow.gene_copy_shares(mothers, fathers)[0]), effective_size(case, plan))
+
+
+def steady_flow(case: Case, plan: Plan, index: int) -> Flow:
+    """Return the flow of one steady flow alone, in a generation that it covers whole."""
+    rate = float(plan.steady[index].migrants_per_generation.best)
+    return flow_of(case, plan, rate / 2, rate / 2)
+
+
+def newcomers_per_generation(case: Case, plan: Plan) -> FloatArray:
+    """Return the newcomers that breed in each step, (G,), as planned: before any rule acts."""
+    start, generation = float(case.time.start_year.best), float(case.time.generation_years.best)
+    count = steps(float(case.time.horizon_years.best), generation)
+    sums = np.zeros(count)
+    for row in event_rows(case, plan):
+        if 0 <= row.t < count:
+            sums[row.t] += row.newcomers
+    begin = start + generation * np.arange(count)
+    for steady in plan.steady:
+        last = np.inf if steady.to_year is None else float(steady.to_year.best) + 1.0
+        first = best(steady.from_year, start)
+        overlap = np.minimum(begin + generation, last) - np.maximum(begin, first)
+        covered = np.clip(overlap / generation, 0.0, 1.0)
+        sums += covered * float(steady.migrants_per_generation.best)
+    return read_only(sums)
+
+
+def generation_sentence(case: Case, year: float) -> str:
+    """Return which generation a year falls in, and what moving a release within it changes."""
+    start, generation = float(case.time.start_year.best), float(case.time.generation_years.best)
+    t = step_of(year, start, generation)
+    begin, end = start + t * generation, start + (t + 1) * generation
+    return (
+        f"{year_text(year)} falls in generation {t + 1}, {year_text(begin)} to {year_text(end)}. "
+        "Moving a release within it changes nothing in the average course and the one-locus odds."
+    )
+
+
+def donor_frequencies(case: Case) -> tuple[tuple[str, str, float], ...]:
+    """Return (locus, donor, frequency of the named allele) for every pair."""
+    return tuple(
+        (locus.name, donor.name, donor_frequency(locus, donor.name))
+        for locus, donor in itertools.product(case.loci, case.donors)
+    )
