@@ -16,8 +16,9 @@ Readings, where the method leaves a choice
     the pairs of sources and in the trait's G_b. Only a donor with `drifts` changes, by its own Ne,
     and H_de between donors stays as it was. z_d and V_d use the donor's diversity at the start.
 4.  fst_to_donors: the donor that comes first in the case and states it gives value and fst_form.
-5.  A rule fires when the value is strictly above `above` or strictly below `below`, whichever is
-    given (both at once, "or" here, and neither, never here, are not settled and not compared). All
+5.  A rule fires when the value is strictly above `above`, or strictly below `below`, whichever is
+    given. Where both are, both must hold (a band): "outside of a band" can be said with two rules,
+    a band cannot. The method says neither; this reading was "or" before it met the program. All
     stop rules are looked at before any release rule of the same step; a rule is looked
     at afresh each step; a firing counts towards `at_most` even if its release falls past the end.
     Rules on a measure without an expected value here do nothing; `surveys` do nothing.
@@ -246,7 +247,7 @@ def holds(rule, record):
     if value is None:
         return False
     above, below = number(rule.get("above")), number(rule.get("below"))
-    return (above is not None and value > above) or (below is not None and value < below)
+    return (above is None or value > above) and (below is None or value < below)
 
 
 def releases_of_step(case, plan, t, record, memory):

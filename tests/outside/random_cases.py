@@ -262,7 +262,8 @@ class Draw:
             when |= {"every_years": every, "times": min(times, left // every + 1)}
         return self.release() | {"when": when}
 
-    def rule(self, k):
+    def condition(self):
+        """Return a measure with a bound, or with two, near where it may run."""
         above = {
             "donor_ancestry": self.between(0.1, 0.6),
             "inbreeding": 1 - self.h / self.reference + self.between(-0.1, 0.1),
@@ -288,7 +289,14 @@ class Draw:
         if self.maybe(0.15):
             bounds = [(self.rng.choice(UNTRACKED), "above", -1)]
         measure, side, bound = self.rng.choice(bounds)
-        rule = {"name": f"rule {k + 1}", "when": measure, side: bound, "then": "stop"}
+        condition = {"when": measure, side: bound}
+        if self.maybe(0.2):  # a band: above one value and below another
+            condition["above"] = bound - (self.between(0.02, 0.4) if side == "below" else 0)
+            condition["below"] = condition["above"] + self.between(0.02, 0.4)
+        return condition
+
+    def rule(self, k):
+        rule = {"name": f"rule {k + 1}", **self.condition(), "then": "stop"}
         if self.maybe(0.3):
             rule |= {"surveys": 2, "survey_every_years": 2, "survey_sd": 0.03}
         if self.donors and self.maybe(0.75):

@@ -14,7 +14,7 @@ import math
 
 import pytest
 
-from rescue_planner.case.document import Case
+from rescue_planner.case.problems import read_case
 from rescue_planner.projection.table import projection_csv
 from tests.outside.independent_recursion import project, value_at_year
 from tests.outside.random_cases import random_cases
@@ -274,7 +274,7 @@ def read_series(text):
 
 @pytest.mark.parametrize(("name", "raw"), CASES, ids=NAMES)
 def test_that_every_value_of_the_program_is_that_of_the_independent_recursion(name, raw):
-    program = read_series(projection_csv(Case.model_validate(json.loads(json.dumps(raw)))))
+    program = read_series(projection_csv(read_case(json.loads(json.dumps(raw)))))
     ours = project(raw)
     assert set(program) == set(ours), "the same series on both sides, none missing, none more"
     for key, values in ours.items():
