@@ -6,11 +6,10 @@ from collections.abc import Iterator
 from typing import Any, get_args, get_origin
 
 from pydantic import BaseModel
-from pydantic_core import to_jsonable_python
 
 from rescue_planner.case.document import Case
 from rescue_planner.case.inputs import Input, input_of
-from rescue_planner.case.paths import ANY, Path, Step
+from rescue_planner.case.paths import ANY, Path, Step, get, put
 from rescue_planner.case.quantity import FrozenMap, Quantity
 
 
@@ -83,11 +82,37 @@ def default_at(path: Path) -> Any:  # noqa: ANN401 - whatever the file may hold
     if field.is_required():
         return None
     default = field.get_default(call_default_factory=True)
-    if isinstance(default, BaseModel) and not isinstance(default, Quantity):
-        return {}
+    return _written(default)
+
+
+def _written(default: Any) -> Any:  # noqa: ANN401 - whatever a field may hold
+    if isinstance(default, BaseModel):
+        return default.model_dump(mode="json", exclude_unset=True)
     if isinstance(default, FrozenMap):
         return {}
-    return to_jsonable_python(default)
+    return [_written(one) for one in default] if isinstance(default, tuple) else default
+
+
+def put_filled(raw: Any, path: Path, value: Any) -> Any:  # noqa: ANN401 - whatever the file holds
+    """Return `raw` with `value` at `path`; parts on the way that were left out get their defaults.
+
+    Raises
+    ------
+    KeyError
+        When the path leads nowhere.
+    """
+    for end in range(1, len(path)):
+        default = default_at(path[:end])
+        if default and _left_out(raw, path[:end]):
+            raw = put(raw, path[:end], default)
+    return put(raw, path, value)
+
+
+def _left_out(raw: Any, path: Path) -> bool:  # noqa: ANN401
+    try:
+        return get(raw, path) is None
+    except KeyError:
+        return True
 
 
 def matches(raw: Any, pattern: Path) -> Iterator[Path]:  # noqa: ANN401 - whatever the file holds
