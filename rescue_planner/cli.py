@@ -96,6 +96,7 @@ def _say(sentence: str) -> None:
 
 def _run(asked: argparse.Namespace) -> int:
     from rescue_planner.annex.export import ExportError, write_run
+    from rescue_planner.projection.chain_path import use_compiled
     from rescue_planner.projection.compare import compare
     from rescue_planner.projection.remarks import every_remark
 
@@ -109,6 +110,8 @@ def _run(asked: argparse.Namespace) -> int:
             raise _Usage(f"The case has no what-if “{asked.what_if}”; it has: {known}.")
         case = applied(case, asked.what_if)
     plans = _plans(case, asked.plans)
+    if "exact" in depths and case.loci:
+        use_compiled()
     comparison = compare(case, plans=plans, depths=depths, what_if=asked.what_if)
     found = every_remark(case)
     try:

@@ -2,11 +2,16 @@
 
 from __future__ import annotations
 
+import hashlib
 import os
+import tempfile
 from pathlib import Path
 
 import platformdirs
 
+from rescue_planner import __version__
+
+CACHE_VARIABLE = "RESCUE_PLANNER_CACHE"
 _APP = "rescue-planner"
 _PACKAGE = Path(__file__).resolve().parent
 
@@ -43,8 +48,37 @@ def user_documents() -> Path:
 
 
 def kernel_cache() -> Path:
-    """Return the user's folder for compiled kernels (not created here)."""
-    return Path(platformdirs.user_cache_dir(_APP, appauthor=False)) / "kernels"
+    """Return the user's folder for what the kernels of exactly this program compile to.
+
+    Its name holds the version and a hash of all kernel sources, since a compiled kernel does not
+    notice a change in another one that it calls; numba itself keeps machines apart.
+    """
+    whole = hashlib.sha256()
+    for source in sorted((_PACKAGE / "kernels").glob("*.py")):
+        whole.update(source.name.encode() + b"\0" + source.read_bytes())
+    name = f"{__version__}-{whole.hexdigest()[:12]}"
+    asked = os.environ.get(CACHE_VARIABLE)
+    base = Path(asked) if asked else Path(platformdirs.user_cache_dir(_APP, appauthor=False))
+    return base / "kernels" / name
+
+
+def prepare_kernel_cache() -> str | None:
+    """Make the kernel cache and tell numba of it; call before numba is imported.
+
+    Returns
+    -------
+    str or None
+        The folder, or nothing where none can be written: kernels then compile in memory.
+    """
+    folder = kernel_cache()
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+        with tempfile.TemporaryFile(dir=folder):
+            pass
+    except OSError:
+        return None
+    os.environ["NUMBA_CACHE_DIR"] = str(folder)
+    return str(folder)
 
 
 def prepare_numerics() -> None:

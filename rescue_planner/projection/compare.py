@@ -153,6 +153,8 @@ def _series_of(
         if checkpoint is not None:
             checkpoint(*place)
         odds = locus_odds(course, locus)
+        if odds is None:
+            continue
         for statistic, values in odds.frequency.items():
             key = f"allele_frequency:{locus.name}"
             yield Series(plan, "exact", key, statistic, read_only(values))  # type: ignore[arg-type]

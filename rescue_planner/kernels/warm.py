@@ -1,0 +1,32 @@
+"""Compile every kernel once, on small arrays: `python -m rescue_planner.kernels.warm`.
+
+The desk starts this as a low-priority child, so that compiling never holds up the window.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from rescue_planner.kernels import exact_chain
+
+
+def warm() -> None:
+    """Call each kernel with the types it is used with."""
+    rows, mass = np.empty((2, 9)), np.zeros((2, 5))
+    exact_chain.course(
+        0.5,
+        np.zeros(1),
+        np.zeros(1),
+        np.full(1, 4, dtype=np.int64),
+        np.ones(3),
+        np.zeros(2),
+        np.array([0.05, 0.25, 0.5, 0.75, 0.95]),
+        1e-14,
+        np.zeros(1, dtype=np.uint8),
+        rows,
+        mass,
+    )
+
+
+if __name__ == "__main__":
+    warm()
