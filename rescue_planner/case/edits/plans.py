@@ -19,11 +19,11 @@ from rescue_planner.case.edits.base import (
     removed,
     renumbered,
 )
-from rescue_planner.case.edits.spoken import counted, spoken_value
 from rescue_planner.case.paths import Path, drop, get, put
 from rescue_planner.case.plans import NO_RELEASES, OtherAction, Rule
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.case.raw import to_raw
+from rescue_planner.case.spoken import counted, spoken_value
 
 Number = float | Quantity
 

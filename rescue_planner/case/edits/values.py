@@ -7,10 +7,10 @@ from typing import Any
 from rescue_planner.case import fields
 from rescue_planner.case.document import Case
 from rescue_planner.case.edits.base import Edit, Value, done, given, plain
-from rescue_planner.case.edits.spoken import spoken_place, spoken_value
 from rescue_planner.case.paths import Path, drop, get, steps_of
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.case.raw import to_raw
+from rescue_planner.case.spoken import spoken_place, spoken_value
 
 
 def set_value(case: Case, path: str | Path, value: Value | None) -> Edit:

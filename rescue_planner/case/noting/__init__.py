@@ -1,0 +1,1 @@
+"""The remarks that need no projection, one module a subject."""

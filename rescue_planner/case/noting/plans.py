@@ -1,0 +1,81 @@
+"""Remarks on plans and targets: what takes no effect, what is not limited, what is not assessed."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from rescue_planner.case.document import Case
+from rescue_planner.case.filled import step_of, steps
+from rescue_planner.case.noting.base import Remark
+from rescue_planner.case.plans import Plan, RuleRelease
+
+DISEASE = (
+    "Disease risk is not assessed by this projection. A disease risk analysis led by qualified "
+    "veterinarians is needed and may rule out a plan."
+)
+_SLACK = 1e-9
+
+
+def on_plans(case: Case) -> Iterator[Remark]:
+    """Yield remarks on releases, donors' limits, targets and disease."""
+    givers = {donor for plan in case.plans for donor in _givers(plan)}
+    if givers:
+        yield Remark("disease-not-assessed", "", DISEASE)
+    for place, donor in enumerate(case.donors):
+        if donor.name in givers and donor.most_removed_per_year is None:
+            yield Remark(
+                "no-removal-limit",
+                f"donors[{place}].most_removed_per_year",
+                f"How many animals may be taken from {donor.name} in a year is not stated, so no "
+                "plan is held to it. Removal limits are set by those responsible for the donor "
+                "population.",
+            )
+    for place, plan in enumerate(case.plans):
+        yield from _releases(case, plan, f"plans[{place}]")
+    yield from _targets(case)
+
+
+def _givers(plan: Plan) -> Iterator[str]:
+    yield from (release.donor for release in plan.releases)
+    yield from (steady.donor for steady in plan.steady)
+    yield from (rule.release.donor for rule in plan.rules if rule.release is not None)
+
+
+def _releases(case: Case, plan: Plan, path: str) -> Iterator[Remark]:
+    time = case.time
+    start, generation = float(time.start_year.best), float(time.generation_years.best)
+    last = steps(float(time.horizon_years.best), generation)
+    for which, release in enumerate(plan.releases):
+        where = f"{path}.releases[{which}]"
+        if not _animals(release):
+            text = f"This release of {plan.name} has neither females nor males."
+            yield Remark("release-of-none", f"{where}.who", text)
+        late = [year for year in release.years() if step_of(year, start, generation) >= last]
+        if late:
+            yield Remark(
+                "release-too-late",
+                f"{where}.when",
+                f"The release of {plan.name} in {late[0]} falls at the end of the horizon and "
+                "takes no effect: release earlier or look further ahead.",
+            )
+    for which, rule in enumerate(plan.rules):
+        if rule.release is not None and not _animals(rule.release):
+            text = f"The release of this rule of {plan.name} has neither females nor males."
+            yield Remark("release-of-none", f"{path}.rules[{which}].release.who", text)
+
+
+def _animals(release: RuleRelease) -> float:
+    return float(release.who.females.best) + float(release.who.males.best)
+
+
+def _targets(case: Case) -> Iterator[Remark]:
+    end = float(case.time.start_year.best) + float(case.time.horizon_years.best)
+    for place, target in enumerate(case.targets):
+        year = float(target.by_year.best)
+        if year > end + _SLACK:
+            yield Remark(
+                "target-after-horizon",
+                f"targets[{place}].by_year",
+                f"This target is for {year:g}, after the horizon ({end:g}): it is read at the last "
+                "step.",
+            )
