@@ -5,6 +5,8 @@ The desk starts this as a low-priority child, so that compiling never holds up t
 
 from __future__ import annotations
 
+import os
+
 import numpy as np
 
 from rescue_planner.kernels import exact_chain
@@ -28,5 +30,12 @@ def warm() -> None:
     )
 
 
+def lower_priority() -> None:
+    """Let everything else on the machine go first, where the system allows it."""
+    if hasattr(os, "nice"):
+        os.nice(10)
+
+
 if __name__ == "__main__":
+    lower_priority()
     warm()
