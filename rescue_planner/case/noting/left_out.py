@@ -22,7 +22,7 @@ _TRAIT = (
 )
 
 
-def on_leftleft_out(case: Case) -> Iterator[Remark]:
+def on_left_out(case: Case) -> Iterator[Remark]:
     """Yield one remark for each part that has defaults in use."""
     yield from _recipient(case)
     if left_out(case, "inbreeding_cost"):

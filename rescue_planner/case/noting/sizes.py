@@ -68,7 +68,7 @@ def _sexes(case: Case, adults: float) -> Iterator[Remark]:
                 "more-breeders-than-adults",
                 f"recipient.breeding_{sex}",
                 f"More {sex} breed in a generation ({breeding:g}) than there are adult {sex} at "
-                f"one time ({there:g}). Right where they follow one another; else check both numbers.",
+                f"one time ({there:g}). Right where they follow one another; or check both.",
             )
 
 
