@@ -8,7 +8,8 @@ from contextlib import contextmanager
 from dataclasses import dataclass
 from functools import lru_cache
 
-FONT = "DejaVu Sans"
+from rescue_planner.annex.face import FONT, cut_family
+
 INK = "#1a1a1a"
 QUIET = "#5c5c5c"
 HAIR = "#d8d8d8"
@@ -63,12 +64,15 @@ def sheet(width: int) -> Sheet:
 
 
 @contextmanager
-def printed() -> Iterator[None]:
-    """Set matplotlib up for print: one font, text as text, the same bytes from the same case."""
+def printed(letters: frozenset[str] = frozenset()) -> Iterator[None]:
+    """Set matplotlib up for print: one font, text as text, the same bytes from the same case.
+
+    `letters` are the characters that the figures need besides the common ones.
+    """
     import matplotlib as mpl
 
     settings = {
-        "font.family": [FONT],
+        "font.family": [cut_family(letters)],
         "svg.fonttype": "none",
         "svg.hashsalt": "rescue planner",
         "pdf.fonttype": 42,
