@@ -120,3 +120,23 @@ def place_labels(
         for i, position in zip(members, positions, strict=True):
             places[i] = Place(position, column)
     return tuple(places)
+
+
+Box = tuple[float, float, float, float]  # left, top, width, height
+
+
+def quietest(candidates: Sequence[Box], busy: Sequence[tuple[float, float]]) -> int:
+    """Return which box covers the fewest busy points; the first of equals.
+
+    Parameters
+    ----------
+    candidates : boxes
+        In the order in which they are liked.
+    busy : points (x, y)
+        What should stay uncovered, such as points along the lines.
+    """
+    counts = [
+        sum(left <= x <= left + wide and top <= y <= top + tall for x, y in busy)
+        for left, top, wide, tall in candidates
+    ]
+    return min(range(len(counts)), key=lambda i: (counts[i], i))

@@ -28,7 +28,7 @@ _FROM_ZERO = frozenset(
     ("adults", "young", "donor_ancestry", "released", "effective_migrants", "cost")
 )
 _WHOLE_RANGE = frozenset(("allele_frequency", "allele_kept", "allele_fixed", "persists"))
-_CHANCES = frozenset(("allele_kept", "allele_fixed", "persists"))
+CHANCES = frozenset(("allele_kept", "allele_fixed", "persists"))
 _PLACES = {"number": 3, "share": 1, "count": 1, "money": 0}
 _OWN_PLACES = {
     "effective_migrants": 1,
@@ -79,7 +79,7 @@ def number(value: float, decimals: int) -> str:
 def shown(key: str, value: float, decimals: int) -> str:
     """Return a measure's shown value; a chance is never rounded to certainty."""
     least = 10.0**-decimals
-    if split(key)[0] in _CHANCES:
+    if split(key)[0] in CHANCES:
         if 0.0 < value < least / 2:
             return f"< {number(least, decimals)}"
         if 100.0 - least / 2 <= value < 100.0:
@@ -327,7 +327,8 @@ def time_ticks(comparison: Comparison, axis: str, most: int) -> tuple[tuple[floa
     """Return (year, label) of the ticks of the time axis, in `years` or `generations`."""
     first, last = float(comparison.years[0]), float(comparison.years[-1])
     if axis == "years":
-        return tuple((at, f"{at:.0f}") for at in ticks(first, last, most, whole=True))
+        whole = ticks(0.0, last - first, most, whole=True)  # counted from the start
+        return tuple((first + after, f"{first + after:.0f}") for after in whole)
     span = (last - first) / comparison.generation_years
     return tuple(
         (first + k * comparison.generation_years, f"{k:.0f}")

@@ -1,0 +1,1 @@
+"""Charts: small multiples that draw what `rescue_planner.projection.picture` describes."""
