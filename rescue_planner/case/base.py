@@ -22,4 +22,4 @@ def given(value: float) -> Quantity:
 
 
 Name = Annotated[str, Input("Name", "", "What this is called; names of one kind differ.")]
-Share = Annotated[Quantity, Input("Share", "share, 0 to 1", "A share.", at_least=0, at_most=1)]
+DonorName = Annotated[str, Input("Donor", "", "The name of a donor of this case.")]

@@ -117,7 +117,7 @@ class Run(Part):
             "The same seed gives the same result.",
             at_least=0,
             whole=True,
-            at_most=2**53,
+            at_most=10**15,
         ),
     ] = Field(default_factory=lambda: given(1))
     parameter_draws: Annotated[

@@ -13,13 +13,15 @@ from rescue_planner.case.paths import ANY, Path, Step, get, put
 from rescue_planner.case.quantity import FrozenMap, Quantity
 
 
-def _alternatives(annotation: Any) -> tuple[Any, ...]:  # noqa: ANN401 - a type expression
+def alternatives(annotation: Any) -> tuple[Any, ...]:  # noqa: ANN401 - a type expression
+    """Return the types that a field may hold; lists and mappings by name stay whole."""
     if get_origin(annotation) in (tuple, FrozenMap) or isinstance(annotation, type):
         return (annotation,)
-    return tuple(a for inner in get_args(annotation) for a in _alternatives(inner))
+    return tuple(a for inner in get_args(annotation) for a in alternatives(inner))
 
 
-def _is_model(annotation: Any) -> bool:  # noqa: ANN401 - a type expression
+def is_model(annotation: Any) -> bool:  # noqa: ANN401 - a type expression
+    """Return whether a type is a part of the case with fields of its own."""
     return (
         isinstance(annotation, type)
         and issubclass(annotation, BaseModel)
@@ -29,13 +31,13 @@ def _is_model(annotation: Any) -> bool:  # noqa: ANN401 - a type expression
 
 def _after(annotation: Any, step: Step) -> Any | None:  # noqa: ANN401 - a type expression
     """Return the type reached from `annotation` by one step, or nothing."""
-    for one in _alternatives(annotation):
+    for one in alternatives(annotation):
         origin = get_origin(one)
         if origin is tuple and not isinstance(step, str):
             return get_args(one)[0]
         if origin is FrozenMap and not isinstance(step, int):
             return get_args(one)[0]
-        if _is_model(one) and isinstance(step, str) and step in one.model_fields:
+        if is_model(one) and isinstance(step, str) and step in one.model_fields:
             return one.model_fields[step].annotation
     return None
 
@@ -47,7 +49,7 @@ def model_at(path: Path) -> type[BaseModel] | None:
         annotation = _after(annotation, step)
         if annotation is None:
             return None
-    return next((one for one in _alternatives(annotation) if _is_model(one)), None)
+    return next((one for one in alternatives(annotation) if is_model(one)), None)
 
 
 def definition_at(path: Path) -> Input | None:
@@ -70,7 +72,7 @@ def is_number(path: Path) -> bool:
         annotation = _after(annotation, step)
         if annotation is None:
             return False
-    return Quantity in _alternatives(annotation)
+    return Quantity in alternatives(annotation)
 
 
 def default_at(path: Path) -> Any:  # noqa: ANN401 - whatever the file may hold
@@ -82,15 +84,16 @@ def default_at(path: Path) -> Any:  # noqa: ANN401 - whatever the file may hold
     if field.is_required():
         return None
     default = field.get_default(call_default_factory=True)
-    return _written(default)
+    return written(default)
 
 
-def _written(default: Any) -> Any:  # noqa: ANN401 - whatever a field may hold
+def written(default: Any) -> Any:  # noqa: ANN401 - whatever a field may hold
+    """Return a default as the file would write it."""
     if isinstance(default, BaseModel):
         return default.model_dump(mode="json", exclude_unset=True)
     if isinstance(default, FrozenMap):
         return {}
-    return [_written(one) for one in default] if isinstance(default, tuple) else default
+    return [written(one) for one in default] if isinstance(default, tuple) else default
 
 
 def put_filled(raw: Any, path: Path, value: Any) -> Any:  # noqa: ANN401 - whatever the file holds

@@ -40,10 +40,10 @@ class Input:
     def bounds(self) -> str:
         """The bounds in words, empty where there are none."""
         words = [
-            f"at least {self.at_least:g}" if self.at_least is not None else "",
-            f"above {self.above:g}" if self.above is not None else "",
-            f"at most {self.at_most:g}" if self.at_most is not None else "",
-            f"below {self.below:g}" if self.below is not None else "",
+            f"at least {self.at_least:.12g}" if self.at_least is not None else "",
+            f"above {self.above:.12g}" if self.above is not None else "",
+            f"at most {self.at_most:.12g}" if self.at_most is not None else "",
+            f"below {self.below:.12g}" if self.below is not None else "",
         ]
         return ", ".join(word for word in words if word)
 
@@ -89,9 +89,25 @@ class Input:
         schema = dict(handler(core))
         unit = f" Unit: {self.unit}." if self.unit not in ("", "–") else ""
         bounds = f" Bounds: {self.bounds}." if self.bounds else ""
+        one_number = not _holds_many(schema)
+        if one_number and self._limits:  # a plain number, and each number of the long form
+            numbers = {part: dict(self._limits) for part in ("best", "low", "high")}
+            schema |= self._limits | {"properties": numbers}
         schema["title"] = self.name
         schema["description"] = f"{self.meaning}{unit}{bounds}"
         return schema
+
+    @property
+    def _limits(self) -> dict[str, Any]:
+        """The bounds as JSON Schema words them; they bind numbers only."""
+        words = {
+            "minimum": self.at_least,
+            "maximum": self.at_most,
+            "exclusiveMinimum": self.above,
+            "exclusiveMaximum": self.below,
+            "multipleOf": 1 if self.whole else None,
+        }
+        return {word: bound for word, bound in words.items() if bound is not None}
 
     def _checked(self, value: Any) -> Any:  # noqa: ANN401
         if isinstance(value, Quantity):
@@ -102,6 +118,12 @@ class Input:
                     text = complaint if part == "best" else f"its {part} {complaint}"
                     raise PydanticCustomError("bounds", "{text}", {"text": text})
         return value
+
+
+def _holds_many(schema: dict[str, Any]) -> bool:
+    """Return whether a schema is that of a list or a mapping by name, not of one number."""
+    shapes = [schema, *schema.get("anyOf", ())]
+    return any(shape.get("type") in ("array", "object") for shape in shapes)
 
 
 def input_of(model: type[BaseModel], field: str) -> Input | None:

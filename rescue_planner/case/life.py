@@ -6,7 +6,7 @@ from typing import Annotated, Literal
 
 from pydantic import Field, StrictBool
 
-from rescue_planner.case.base import Name, Part, Share, given
+from rescue_planner.case.base import Name, Part, given
 from rescue_planner.case.inputs import Input
 from rescue_planner.case.quantity import FrozenMap, Quantity
 
@@ -117,12 +117,22 @@ class YearlySd(Part):
     ] = Field(default_factory=lambda: given(0))
 
 
+def _lost(name: str, meaning: str) -> Input:
+    return Input(name, "share, 0 to 1", meaning, at_least=0, at_most=1)
+
+
 class LostShare(Part):
     """Share of each class that a die-off takes."""
 
-    first_year: Share = Field(default_factory=lambda: given(0))
-    subadult: Share = Field(default_factory=lambda: given(0))
-    adult: Share = Field(default_factory=lambda: given(0))
+    first_year: Annotated[
+        Quantity, _lost("First-year animals lost", "Share of animals in their first year that die.")
+    ] = Field(default_factory=lambda: given(0))
+    subadult: Annotated[Quantity, _lost("Subadults lost", "Share of subadults that die.")] = Field(
+        default_factory=lambda: given(0)
+    )
+    adult: Annotated[Quantity, _lost("Adults lost", "Share of adults that die.")] = Field(
+        default_factory=lambda: given(0)
+    )
 
 
 class DieOff(Part):
@@ -142,7 +152,9 @@ class DieOff(Part):
         ),
     ]
     lost_share: LostShare = LostShare()
-    young_lost_share: Share = Field(default_factory=lambda: given(0))
+    young_lost_share: Annotated[
+        Quantity, _lost("Young lost", "Share of that year’s young that are never born or raised.")
+    ] = Field(default_factory=lambda: given(0))
 
 
 class LifeCycle(Part):

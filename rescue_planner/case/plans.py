@@ -7,7 +7,7 @@ from typing import Annotated, Literal
 
 from pydantic import Field
 
-from rescue_planner.case.base import Name, Part, given
+from rescue_planner.case.base import DonorName, Name, Part, given
 from rescue_planner.case.inputs import Input
 from rescue_planner.case.quantity import Quantity
 
@@ -99,7 +99,7 @@ class ReleaseCost(Part):
 class RuleRelease(Part):
     """A release that a rule sets off; its year comes from the rule."""
 
-    donor: Name
+    donor: DonorName
     who: Who = Who()
     afterwards: Afterwards = Afterwards()
     loan_years: Annotated[
@@ -125,7 +125,7 @@ class Release(RuleRelease):
 class Steady(Part):
     """Newcomers that breed, as a rate, half females and half males."""
 
-    donor: Name
+    donor: DonorName
     migrants_per_generation: Annotated[
         Quantity,
         Input(

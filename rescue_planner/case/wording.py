@@ -82,7 +82,7 @@ def _sentence(error: ErrorDetails, path: Path) -> str:
 def _name(path: Path) -> str:
     definition = fields.definition_at(path)
     last = path[-1] if path else ""
-    if definition is not None and (definition.name != "Name" or last == "name"):
+    if definition is not None:
         if last in Quantity.model_fields and fields.model_at(path[:-1]) is None:
             return f"“{definition.name}”, its {last},"
         counted = f", entry {last + 1}," if isinstance(last, int) else ""
