@@ -1,20 +1,14 @@
-"""Drawing one measure into one pair of axes."""
+"""Drawing one measure's bands, lines and targets into a frame."""
 
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
-from typing import TYPE_CHECKING, Any
-
-import numpy as np
+from typing import Any
 
 from rescue_planner.annex.curves import Curve, Goal
-from rescue_planner.annex.scales import Scale
-from rescue_planner.annex.sheet import HAIR, INK, QUIET, THINNEST_PT, Sheet
+from rescue_planner.annex.frame import Frame
+from rescue_planner.annex.sheet import INK, QUIET, THINNEST_PT
 from rescue_planner.projection.marks import PlanMark
-
-if TYPE_CHECKING:
-    from matplotlib.axes import Axes
 
 MARKERS = {
     "circle": "o",
@@ -24,16 +18,9 @@ MARKERS = {
     "cross": "x",
     "triangle-down": "v",
 }
+# Shapes of one size look unlike in size; these make up for it.
+_SIZES = {"triangle": 1.35, "triangle-down": 1.35, "diamond": 0.95, "square": 0.95, "cross": 1.1}
 MOST_FILLED_BANDS = 3
-
-
-@dataclass(frozen=True, slots=True)
-class Scales:
-    """The scales of a panel: years below, generations above, values at left."""
-
-    years: Scale
-    generations: Scale
-    values: Scale
 
 
 def dash(mark: PlanMark) -> Any:  # noqa: ANN401 - matplotlib's line style
@@ -46,81 +33,57 @@ def marker_style(mark: PlanMark, size: float) -> dict[str, Any]:
     stroke = mark.marker == "cross"
     return {
         "marker": MARKERS[mark.marker],
-        "markersize": size,
+        "markersize": size * _SIZES.get(mark.marker, 1.0),
         "markerfacecolor": mark.light,
         "markeredgecolor": mark.light if stroke else "white",
         "markeredgewidth": 1.0 if stroke else THINNEST_PT,
     }
 
 
-def bare(axes: Axes, scales: Scales, text: float) -> None:
-    """Set limits, ticks and hairlines; no frame but the two time axes."""
-    axes.set_xlim(scales.years.low, scales.years.high)
-    axes.set_ylim(scales.values.low, scales.values.high)
-    axes.set_xticks(scales.years.ticks, scales.years.texts)
-    axes.set_yticks(scales.values.ticks, scales.values.texts)
-    axes.tick_params(labelsize=text)
-    axes.tick_params(axis="y", length=0)
-    axes.grid(visible=True, axis="y", color=HAIR, linewidth=THINNEST_PT)
-    axes.set_axisbelow(True)
-    for side in ("left", "right", "top"):
-        axes.spines[side].set_visible(False)
-    if scales.values.low < 0 < scales.values.high:
-        axes.axhline(0.0, color=QUIET, linewidth=THINNEST_PT, zorder=1)
-
-
-def generations_on_top(axes: Axes, scales: Scales, text: float, outward: float = 0.0) -> Axes:
-    """Put the axis of generations above the plot, `outward` points away from it."""
-    top = axes.twiny()
-    top.set_xlim(scales.generations.low, scales.generations.high)
-    top.set_xticks(scales.generations.ticks, scales.generations.texts)
-    top.tick_params(labelsize=text)
-    for side in ("left", "right", "bottom"):
-        top.spines[side].set_visible(False)
-    if outward:
-        top.spines["top"].set_position(("outward", outward))
-    top.patch.set_visible(False)
-    return top
-
-
-def draw_lines(axes: Axes, lines: Sequence[Curve], sheet: Sheet) -> None:
+def draw_lines(frame: Frame, lines: Sequence[Curve]) -> None:
     """Draw bands, then lines with their markers, the first plan lowest."""
     banded = sum(line.band.wide is not None for line in lines)
     for line in lines:
-        _draw_band(axes, line, filled=banded <= MOST_FILLED_BANDS)
+        _draw_band(frame, line, filled=banded <= MOST_FILLED_BANDS)
     for index, line in enumerate(lines):
-        axes.plot(
-            line.years,
-            line.values,
+        frame.line(
+            frame.across(line.years),
+            frame.up(line.values),
             color=line.mark.light,
             linestyle=dash(line.mark),
-            linewidth=sheet.line,
+            linewidth=frame.paper.line,
             markevery=marked(line.values.size, index, len(lines)),
-            clip_on=False,
             zorder=3 + 0.01 * index,
-            **marker_style(line.mark, sheet.marker),
+            **marker_style(line.mark, frame.paper.marker),
         )
-        if line.gone is not None and line.values.size and line.years[-1] < line.gone:
-            _draw_end(axes, line, sheet)
+        if ended(line):
+            _draw_end(frame, line)
+
+
+def ended(line: Curve) -> bool:
+    """Return whether a line stops because no animal is left."""
+    return line.gone is not None and float(line.years[-1]) < line.gone
 
 
 def marked(count: int, index: int, plans: int) -> list[int]:
     """Return which points of a line carry its marker: about six, staggered from plan to plan."""
     every = max(1, -(-count // 6))
-    return list(range(index * every // max(plans, 1), count, every))
+    return list(range(min(index * every // max(plans, 1), count - 1), count, every))
 
 
-def _draw_band(axes: Axes, line: Curve, filled: bool) -> None:
-    colour, (wide, narrow) = line.mark.light, (line.band.wide, line.band.narrow)
+def _draw_band(frame: Frame, line: Curve, filled: bool) -> None:
+    colour, wide, narrow = line.mark.light, line.band.wide, line.band.narrow
+    x = frame.across(line.years)
     if filled:
         for pair, alpha in ((wide, 0.12), (narrow, 0.14)):
             if pair is not None:
-                axes.fill_between(line.years, *pair, color=colour, alpha=alpha, linewidth=0)
+                low, high = (frame.up(edge) for edge in pair)
+                frame.fill(x, low, high, facecolor=colour, alpha=alpha, zorder=2)
     elif wide is not None:
         for edge in wide:
-            axes.plot(
-                line.years,
-                edge,
+            frame.line(
+                x,
+                frame.up(edge),
                 color=colour,
                 linestyle=dash(line.mark),
                 linewidth=THINNEST_PT,
@@ -129,60 +92,36 @@ def _draw_band(axes: Axes, line: Curve, filled: bool) -> None:
             )
 
 
-def _draw_end(axes: Axes, line: Curve, sheet: Sheet) -> None:
+def _draw_end(frame: Frame, line: Curve) -> None:
     """Mark where a population's line ends because no animal is left."""
-    axes.plot(
-        line.years[-1:],
-        line.values[-1:],
+    frame.line(
+        frame.across(line.years[-1:]),
+        frame.up(line.values[-1:]),
         marker="X",
-        markersize=sheet.marker * 1.9,
+        markersize=frame.paper.marker * 1.9,
         markerfacecolor="white",
         markeredgecolor=line.mark.light,
         markeredgewidth=0.9,
         linestyle="none",
-        clip_on=False,
         zorder=5,
     )
 
 
-def draw_goals(axes: Axes, goals: Sequence[Goal], sheet: Sheet) -> None:
-    """Draw each target's bound as a hairline that ends at its year in an open arrow head."""
-    first, last = axes.get_xlim()
+def draw_goals(frame: Frame, goals: Sequence[Goal]) -> None:
+    """Draw each target's bound as a thin line that ends at its year in a caret."""
+    years = frame.scales.years
     for goal in goals:
-        year = min(max(goal.year, first), last)
-        axes.plot(
-            [first, year],
-            [goal.bound, goal.bound],
-            color=QUIET,
-            linewidth=0.6,
-            zorder=2.5,
-        )
-        axes.plot(
-            [year],
-            [goal.bound],
+        end = float(frame.across(min(max(goal.year, years.low), years.high)))
+        y = float(frame.up(goal.bound))
+        frame.line([0, end], [y, y], color=QUIET, linewidth=0.6, zorder=2.5)
+        frame.line(
+            [end],
+            [y],
             marker=6 if goal.at_least else 7,  # carets whose tip lies on the bound
-            markersize=sheet.marker * 1.6,
+            markersize=frame.paper.marker * 1.5,
             markerfacecolor="white",
             markeredgecolor=INK,
             markeredgewidth=0.7,
             linestyle="none",
-            clip_on=False,
             zorder=6,
         )
-
-
-def crossings(lines: Sequence[Curve], box: tuple[float, float, float, float]) -> int:
-    """Return how many points of the lines, drawn densely, lie in a box of data coordinates.
-
-    Parameters
-    ----------
-    box : (left, right, low, high)
-    """
-    left, right, low, high = box
-    at = np.linspace(left, right, 60)
-    total = 0
-    for line in lines:
-        inside = at[(at >= line.years[0]) & (at <= line.years[-1])]
-        values = np.interp(inside, line.years, line.values)
-        total += int(((values >= low) & (values <= high)).sum())
-    return total

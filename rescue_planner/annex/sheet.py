@@ -45,16 +45,6 @@ class Sheet:
         """Height of a line of text in millimetres."""
         return self.text * 1.2 / POINTS_PER_MM
 
-    @property
-    def box(self) -> tuple[float, float, float, float]:
-        """Left, bottom, width and height of the plot as shares of the sheet."""
-        return (
-            self.left / self.width,
-            self.bottom / self.height,
-            (self.width - self.left - self.right) / self.width,
-            (self.height - self.bottom - self.top) / self.height,
-        )
-
 
 def sheet(width: int) -> Sheet:
     """Return the sheet of a single figure, 85 or 170 mm wide."""
@@ -78,19 +68,6 @@ def printed(letters: frozenset[str] = frozenset()) -> Iterator[None]:
         "pdf.fonttype": 42,
         "text.parse_math": False,
         "text.color": INK,
-        "axes.edgecolor": QUIET,
-        "axes.labelcolor": INK,
-        "axes.linewidth": THINNEST_PT,
-        "xtick.color": QUIET,
-        "ytick.color": QUIET,
-        "xtick.labelcolor": INK,
-        "ytick.labelcolor": INK,
-        "xtick.major.width": THINNEST_PT,
-        "ytick.major.width": THINNEST_PT,
-        "xtick.major.size": 2.2,
-        "ytick.major.size": 2.2,
-        "xtick.major.pad": 2.0,
-        "ytick.major.pad": 2.0,
         "figure.facecolor": "white",
         "savefig.facecolor": "white",
         "lines.solid_capstyle": "butt",

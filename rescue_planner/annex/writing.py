@@ -45,8 +45,6 @@ def put(path: Path, content: bytes) -> str:
         beside = Path(name)
         with os.fdopen(handle, "wb") as out:
             out.write(content)
-            out.flush()
-            os.fsync(out.fileno())
         beside.chmod(_mode(path.parent))
         beside.replace(path)
     except OSError as error:
