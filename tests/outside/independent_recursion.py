@@ -45,6 +45,7 @@ Readings, where the method leaves a choice
 18. The relative survival at t = 0, the divisor under `here_now`, is that of mean F, without pairs.
 19. A life cycle's rates, a locus's fitness and donor frequencies, and a trait's heritability,
     width, loci and mutational variance have no default here: they must be there.
+20. Steady flow without from_year begins at the start, without to_year goes on for good.
 """
 
 import math
@@ -93,8 +94,12 @@ def last_step(case):
     return math.ceil(number(case["time"]["horizon_years"]) / generation(case) - TOLERANCE)
 
 
+def start_year(case):
+    return number(case["time"]["start_year"])
+
+
 def steps_until(case, year):
-    return (number(year) - number(case["time"]["start_year"])) / generation(case)
+    return (number(year) - start_year(case)) / generation(case)
 
 
 def step_of(case, year):
@@ -293,8 +298,9 @@ def flow_of_step(case, plan, state, t, happening):
         for sex, by_donor in effective.items():
             by_donor[release["donor"]] += heads(release, sex) * per_head
     for steady in [] if stopped else plan.get("steady") or []:
-        first = max(t, steps_until(case, steady["from_year"]))
-        last = min(t + 1, steps_until(case, number(steady["to_year"]) + 1))
+        first = max(t, steps_until(case, number(steady.get("from_year"), start_year(case))))
+        to_year = number(steady.get("to_year"), math.inf)
+        last = min(t + 1, steps_until(case, to_year + 1))
         for by_donor in effective.values():
             part = number(steady["migrants_per_generation"]) * max(0.0, last - first)
             by_donor[steady["donor"]] += part / 2

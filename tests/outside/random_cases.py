@@ -208,6 +208,8 @@ class Draw:
         measures = ["gene_diversity_kept", "inbreeding", "donor_ancestry"]
         if self.has_cycle:
             measures.append("adults")
+        for name in self.loci:
+            measures += [f"allele_frequency:{name}", f"allele_kept:{name}"]
         return {
             "measure": self.rng.choice(measures),
             self.rng.choice(["at_least", "at_most"]): self.between(0.1, 0.9),
@@ -232,12 +234,15 @@ class Draw:
 
     def steady(self):
         first, last = sorted([self.year(), self.year()])
-        return {
+        steady = {
             "donor": self.rng.choice(self.donors),
             "migrants_per_generation": self.entry(self.between(0.2, 4), 0.1),
-            "from_year": first,
-            "to_year": last,
         }
+        if self.maybe(0.8):
+            steady["from_year"] = first
+        if self.maybe(0.8):
+            steady["to_year"] = last
+        return steady
 
     def release(self):
         release = {

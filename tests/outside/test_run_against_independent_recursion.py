@@ -14,10 +14,11 @@ import math
 
 import pytest
 
+from rescue_planner import cli, places
 from rescue_planner.case.problems import read_case
 from rescue_planner.projection.table import projection_csv
-from tests.outside.independent_recursion import project, value_at_year
-from tests.outside.random_cases import random_cases
+from tests.outside.independent_recursion import number, project, value_at_year
+from tests.outside.random_cases import random_cases, write_case
 
 # --- is the judge right? ---------------------------------------------------------------------
 
@@ -262,23 +263,64 @@ NAMES = [name for name, _ in CASES]
 CLOSE = {"rel": 1e-9, "abs": 1e-10}
 
 
-def read_series(text):
+def read_series(text, raw):
     """Return {(plan, depth, measure, statistic): [values]} of a projection.csv."""
+    start, generation = (number(raw["time"][x]) for x in ("start_year", "generation_years"))
     series = collections.defaultdict(list)
     for row in csv.DictReader(io.StringIO(text)):
         key = row["plan"], row["depth"], row["measure"], row["statistic"]
-        assert int(row["generation"]) == len(series[key]), "rows of a series stand in order of t"
+        t = len(series[key])
+        assert int(row["generation"]) == t, "the rows of a series stand in the order of t"
+        assert float(row["year"]) == pytest.approx(start + t * generation, rel=1e-12)
         series[key].append(float(row["value"]))
     return dict(series)
 
 
 @pytest.mark.parametrize(("name", "raw"), CASES, ids=NAMES)
 def test_that_every_value_of_the_program_is_that_of_the_independent_recursion(name, raw):
-    program = read_series(projection_csv(read_case(json.loads(json.dumps(raw)))))
-    ours = project(raw)
+    text = projection_csv(read_case(json.loads(json.dumps(raw))))
+    assert_same(read_series(text, raw), project(raw))
+
+
+def assert_same(program, ours):
     assert set(program) == set(ours), "the same series on both sides, none missing, none more"
     for key, values in ours.items():
-        assert program[key] == pytest.approx(values, **CLOSE), (name, *key)
+        assert program[key] == pytest.approx(values, **CLOSE), key
+
+
+SHIPPED = sorted(places.scenarios().glob("*.json"))
+
+
+@pytest.mark.parametrize("path", SHIPPED, ids=[path.stem for path in SHIPPED])
+def test_that_the_cases_that_ship_have_the_values_of_the_independent_recursion(path):
+    raw = json.loads(path.read_text(encoding="utf-8"))
+    assert_same(read_series(projection_csv(read_case(raw)), raw), project(raw))
+
+
+@pytest.mark.slow
+@pytest.mark.parametrize(("name", "raw"), CASES[3:55:13], ids=NAMES[3:55:13])
+def test_that_the_files_of_a_run_hold_the_values_of_the_independent_recursion(name, raw, tmp_path):
+    path = write_case(raw, tmp_path / "case.json")
+    folder = tmp_path / "out"
+    assert cli.main(["run", str(path), "--to", str(folder), "--depth", "expected,exact"]) == 0
+    ours = project(raw)
+    text = (folder / "projection.csv").read_text(encoding="utf-8")
+    assert_same(read_series(text, raw), ours)
+    text = (folder / "target_checks.csv").read_text(encoding="utf-8")
+    rows = list(csv.DictReader(io.StringIO(text)))
+    asked = [
+        (place, target, key)
+        for place, target in enumerate(raw["targets"], start=1)
+        for key in ours
+        if key[2] == target["measure"] and key[3] in ("mean", "share")
+    ]
+    assert len(rows) == len(asked) > 0
+    for place, target, key in asked:
+        (row,) = [x for x in rows if (int(x["target"]), x["plan"], x["depth"]) == (place, *key[:2])]
+        value = value_at_year(raw, ours[key], target["by_year"])
+        met = target.get("at_least", -math.inf) <= value <= target.get("at_most", math.inf)
+        assert float(row["value"]) == pytest.approx(value, **CLOSE)
+        assert row["met"] == ("yes" if met else "no")
 
 
 def test_that_the_cases_use_what_the_depths_can_do():
