@@ -68,21 +68,36 @@ def test_that_the_diverse_donor_gains_most_diversity_and_hardly_any_protection(r
     best = max(plans, key=lambda p: mean(result, p, "gene_diversity_kept", BEFORE))
     assert best == DIVERSE
     assert mean(result, DIVERSE, "gene_diversity_kept", BEFORE) > 1.2
-    assert kept(result, DIVERSE, END) < 0.25
+    assert kept(result, DIVERSE, END) < 0.4
 
 
-def test_that_protected_now_and_diverse_later_overtakes_in_diversity(result):
-    """Behind in 2035 by its fewer diverse frogs, ahead from 2044 on, after its third release."""
+def test_that_protected_now_and_diverse_later_ends_up_with_both(result):
+    """Behind in diversity in 2035 by its fewer diverse frogs, level after its third release.
+
+    The plan with diverse frogs only brings the allele as a few copies (0.02 of a third of 68, about
+    one half copy), so it mostly lacks it.
+    """
     measure = "gene_diversity_kept"
     assert mean(result, DIVERSE, measure, BEFORE) > mean(result, BOTH, measure, BEFORE) + 0.05
-    assert mean(result, BOTH, measure, AFTER) > mean(result, DIVERSE, measure, AFTER) + 0.03
+    assert mean(result, BOTH, measure, AFTER) > mean(result, DIVERSE, measure, AFTER) - 0.02
+    assert kept(result, BOTH, END) > 0.9
+    assert kept(result, DIVERSE, END) < 0.4
 
 
-def test_that_later_diverse_frogs_thin_the_allele_out_again(result):
-    """Each later release of frogs that lack it holds the allele at about 0.13 for 13 years."""
+def test_that_later_diverse_frogs_hold_the_allele_down_while_they_come(result):
+    """Frogs that lack it thin it out as fast as it spreads: about 0.13 from 2031 to 2044.
+
+    The plan that waited, two generations later at its first release, is ahead by then.
+    """
     held = [mean(result, BOTH, FREQUENCY, year) for year in (ONE, BEFORE, 2040, AFTER)]
     assert max(held) - min(held) < 0.04
-    assert kept(result, BOTH, END) < kept(result, WAIT, END) - 0.05
+    assert mean(result, WAIT, FREQUENCY, AFTER) > max(held) + 0.05
+
+
+def test_that_the_few_copies_go_down_with_a_population_that_shrinks(result):
+    """Six frogs don't stop the decline; fewer adults lose rare alleles faster, so chances fall."""
+    assert float(result.get(FEW, "expected", "adults").values[-1]) < 5
+    assert kept(result, FEW, END) < kept(result, FEW, AFTER) - 0.2
 
 
 def test_that_the_breeding_stock_gives_what_it_holds_above_its_floor(case):

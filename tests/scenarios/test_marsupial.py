@@ -44,7 +44,7 @@ def test_that_the_cool_donor_gives_more_diversity_throughout(result):
 
 
 def test_that_the_warm_donor_moves_the_mean_by_its_share_of_the_difference(result):
-    """0.219 * 2.3 SD = 0.504 by mixing; selection then pulls a little back to the optimum at 0.1."""
+    """0.219 * 2.3 SD = 0.504 by mixing; selection then pulls a little back, to 0.1."""
     assert 0.42 < at(result, WARM, "trait_mean", EARLY) < 0.504
 
 

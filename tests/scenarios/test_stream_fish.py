@@ -35,7 +35,7 @@ def test_that_a_closed_population_loses_one_part_in_2ne_each_generation(result, 
 
 @pytest.mark.parametrize(("plan", "newcomers"), [(ONE, 1), (BOTH, 1), (FIVE, 5)])
 def test_that_ancestry_follows_the_share_of_newcomers_among_parents(result, plan, newcomers):
-    """Half of them join 30 mothers, half 30 fathers: 1 - (1 - m)^20, 28 % for one, 80 % for five."""
+    """Half join 30 mothers, half 30 fathers: 1 - (1 - m)^20, 28 % for one, 80 % for five."""
     m = newcomers / 2 / (30 + newcomers / 2)
     assert at(result, plan, "donor_ancestry") == pytest.approx(1 - (1 - m) ** 20, abs=1e-12)
 
@@ -54,7 +54,7 @@ def test_that_one_newcomer_holds_diversity_where_it_is(result):
 
 
 def test_that_the_order_of_newcomer_and_joined_pools_turns_if_half_of_them_breed(case, result):
-    """By a clear margin one newcomer keeps more than joined pools; with half a newcomer it is behind.
+    """One newcomer keeps clearly more than joined pools, half a newcomer keeps less.
 
     Joined pools do not change with newcomers: 0.833 both times.
     """
