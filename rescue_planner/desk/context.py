@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, Signal
 
-from rescue_planner.case.problems import Problem
+from rescue_planner.case.faults import Problem
 from rescue_planner.desk.document import CaseDocument
 from rescue_planner.desk.jobs import JobRunner
 from rescue_planner.desk.view import ViewState

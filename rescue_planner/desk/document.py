@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from datetime import UTC, datetime
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -11,7 +11,7 @@ from PySide6.QtCore import QObject, Signal
 from PySide6.QtGui import QUndoCommand, QUndoStack
 
 from rescue_planner.case.document import Case
-from rescue_planner.case.problems import InvalidCase, Problem
+from rescue_planner.case.faults import InvalidCase, Problem
 
 if TYPE_CHECKING:
     from rescue_planner.case.edits import Edit
@@ -81,6 +81,11 @@ class CaseDocument(QObject):
         return self.has_case and (self._never_saved or not self.undo_stack.isClean())
 
     @property
+    def tables(self) -> Mapping[str, bytes]:
+        """Data brought in, by file name; kept as it was opened."""
+        return self._tables
+
+    @property
     def trail(self) -> tuple[dict[str, Any], ...]:
         """The edits that led to the open case, with those its file brought."""
         return (*self._log, *self._trail[: self.undo_stack.index()])
@@ -112,10 +117,10 @@ class CaseDocument(QObject):
 
     # files
 
-    def new(self, case: Case, *, path: Path | None = None) -> None:
-        """Show a case that no file holds yet (or, with `path`, one taken from a copy of it)."""
+    def new(self, case: Case, *, path: Path | None = None, unsaved: bool = True) -> None:
+        """Show a case that no file holds yet, or that differs from what `path` holds."""
         self._replace(case, path, (), {}, ())
-        self._never_saved = True
+        self._never_saved = unsaved
         self.state_changed.emit()
 
     def open(self, path: Path) -> None:
@@ -129,7 +134,7 @@ class CaseDocument(QObject):
         from rescue_planner.case.file import load
 
         opened = load(path)
-        self._replace(opened.case, path, tuple(opened.said), dict(opened.tables), opened.log)
+        self._replace(opened.case, path, tuple(opened.said), opened.tables, opened.log)
 
     def save(self, path: Path) -> None:
         """Write the case beside `path` and put it in its place.
@@ -161,11 +166,11 @@ class CaseDocument(QObject):
         case: Case,
         path: Path | None,
         said: tuple[str, ...],
-        tables: dict[str, bytes],
+        tables: Mapping[str, bytes],
         log: tuple[dict[str, Any], ...],
     ) -> None:
         self._case, self.path, self.said = case, path, said
-        self._tables, self._log, self._never_saved = tables, log, False
+        self._tables, self._log, self._never_saved = dict(tables), log, False
         self.undo_stack.clear()
         self._trail.clear()
         self.replaced.emit()

@@ -19,10 +19,10 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from rescue_planner.case.faults import Problem
 from rescue_planner.case.fields import definition_at
 from rescue_planner.case.inputs import Input
 from rescue_planner.case.paths import parse_path
-from rescue_planner.case.problems import Problem
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
@@ -131,7 +131,7 @@ class _Bound(QWidget):
         bounds = f" Bounds: {self.definition.bounds}." if self.definition.bounds else ""
         return f"{self.definition.meaning}{bounds}"
 
-    def _commit(self, value: object) -> bool:
+    def _commit(self, value: float | str | bool | None) -> bool:
         from rescue_planner.case.edits import set_value
 
         problems = self.desk.document.try_edit(lambda case: set_value(case, self.path, value))

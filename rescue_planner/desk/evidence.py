@@ -1,0 +1,114 @@
+"""Numbers beside the fields of the Case page; no widgets, so that a test can check them."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from typing import Any
+
+from pydantic import BaseModel
+
+from rescue_planner.case.document import Case
+from rescue_planner.case.filled import lethal_equivalents
+from rescue_planner.case.population import Donor
+from rescue_planner.case.quantity import FrozenMap, Quantity
+
+KINDS = ("measured", "borrowed", "guessed", "not stated")
+
+
+def quantities(held: Any) -> Iterator[Quantity]:  # noqa: ANN401 - any part of a case
+    """Yield every number that a part of the case was given, defaults not counted."""
+    if isinstance(held, Quantity):
+        yield held
+    elif isinstance(held, BaseModel):
+        for name in type(held).model_fields:
+            if name in held.model_fields_set:
+                yield from quantities(getattr(held, name))
+    elif isinstance(held, FrozenMap):
+        for one in held.values():
+            yield from quantities(one)
+    elif isinstance(held, tuple):
+        for one in held:
+            yield from quantities(one)
+
+
+def evidence(case: Case) -> dict[str, int]:
+    """Count the numbers that describe the populations by origin; plans and targets are choices."""
+    counts = dict.fromkeys(KINDS, 0)
+    described = (
+        case.time.generation_years, case.recipient, case.donors, case.loci, case.life_cycle,
+        case.inbreeding_cost, case.trait,
+    )  # fmt: skip
+    for held in quantities(described):
+        counts[held.origin or "not stated"] += 1
+    return counts
+
+
+def evidence_in_words(case: Case) -> str:
+    """Return the counts as one line."""
+    return "  ·  ".join(f"{count} {kind}" for kind, count in evidence(case).items())
+
+
+def ratio_in_words(case: Case) -> str:
+    """Return Ne against the adults counted, and today's inbreeding against the reference."""
+    recipient = case.recipient
+    ratio = float(recipient.effective_size.best) / float(recipient.adults.best)
+    f = 1.0 - float(recipient.gene_diversity.best) / float(recipient.reference_gene_diversity.best)
+    return (
+        f"Ne is {ratio:.2f} of the adults counted.  Inbreeding today: F = 1 − "
+        f"{recipient.gene_diversity.best:g}/{recipient.reference_gene_diversity.best:g} = {f:.2f}."
+    )
+
+
+def inbreeding_cost_in_words(case: Case) -> str:
+    """Return what the lethal equivalents mean at F = 0.125 and 0.25."""
+    from rescue_planner.theory.inbreeding import survival_factor
+
+    load = lethal_equivalents(case)
+    diploid = float(load.first_year.best)
+    at = [100 * float(survival_factor(f, diploid)) for f in (0.125, 0.25)]
+    words = (
+        f"{diploid:g} diploid ({diploid / 2:g} haploid) in the first year: young of F = 0.125 "
+        f"survive {at[0]:.0f} %, of F = 0.25 {at[1]:.0f} % as well as outbred young."
+    )
+    mother = float(load.young_per_female.best)
+    if mother:
+        kept = 100 * float(survival_factor(0.25, mother))
+        words += f" A mother of F = 0.25 has {kept:.0f} % of the young of an outbred one."
+    return words + " Does this look right?"
+
+
+def generations_in_words(case: Case) -> str:
+    """Return the horizon in generations."""
+    count = float(case.time.horizon_years.best) / float(case.time.generation_years.best)
+    start, years = float(case.time.start_year.best), float(case.time.horizon_years.best)
+    return f"{start:g} to {start + years:g}: {years:g} years are {count:.3g} generations."
+
+
+def screen_in_words(donor: Donor) -> str:
+    """Return what the screen's answers leave open or point at; never a verdict."""
+    screen = donor.screen
+    asked = {
+        "same species": getattr(screen, "same_species", None),
+        "fixed chromosome differences": getattr(screen, "fixed_chromosome_differences", None),
+        "years apart": getattr(screen, "years_apart", None),
+        "environment": getattr(screen, "environment_differs", None),
+    }
+    open_ = [name for name, held in asked.items() if held in (None, "unknown")]
+    raised = []
+    if asked["same species"] == "no":
+        raised.append("not the same species")
+    if asked["fixed chromosome differences"] == "yes":
+        raised.append("fixed chromosome differences")
+    apart = asked["years apart"]
+    if isinstance(apart, Quantity) and apart.best > 500:
+        raised.append("more than 500 years apart")
+    if asked["environment"] in ("some", "much"):
+        raised.append(f"environment differs ({asked['environment']})")
+    words = []
+    if raised:
+        words.append(f"Raises the risk of harm by mixing: {', '.join(raised)}.")
+    if open_:
+        words.append(f"Not known: {', '.join(open_)}; unknown is not low.")
+    if not words:
+        words.append("No answer raises the risk of harm by mixing; this is a screen, not a proof.")
+    return " ".join(words)
