@@ -24,7 +24,7 @@ def check_sizes(raw: Raw) -> Iterator[Problem]:
         if own is not None and at(raw, "recipient", "effective_size_follows_adults") is not True:
             yield from _shrunk(raw, plan, own, f"plans[{place}].other_actions")
     for path, one in sizes:
-        if one is not None and adults is not None and one > adults:
+        if one is not None and adults is not None and one > adults > 0:
             text = (
                 f"The effective size {one:g} is above the {adults:g} adults: correct one of them."
             )
