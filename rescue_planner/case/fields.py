@@ -96,6 +96,20 @@ def written(default: Any) -> Any:  # noqa: ANN401 - whatever a field may hold
     return [written(one) for one in default] if isinstance(default, tuple) else default
 
 
+def filled_at(raw: Any, path: Path) -> Any:  # noqa: ANN401 - whatever the file holds
+    """Return what holds at `path`: what stands there, or the default of the part or the field."""
+    for end in range(1, len(path) + 1):
+        step = path[end - 1]
+        if isinstance(raw, dict):
+            raw = raw.get(step)
+        elif isinstance(raw, list) and isinstance(step, int) and step < len(raw):
+            raw = raw[step]
+        else:
+            return None
+        raw = default_at(path[:end]) if raw is None else raw
+    return raw
+
+
 def put_filled(raw: Any, path: Path, value: Any) -> Any:  # noqa: ANN401 - whatever the file holds
     """Return `raw` with `value` at `path`; parts on the way that were left out get their defaults.
 

@@ -9,7 +9,7 @@ from typing import Any
 from rescue_planner.case import fields
 from rescue_planner.case.document import Case, Change, WhatIf
 from rescue_planner.case.faults import InvalidCase, Problem
-from rescue_planner.case.paths import Path, format_path, get, steps_of
+from rescue_planner.case.paths import Path, format_path, steps_of
 from rescue_planner.case.problems import read_case
 from rescue_planner.case.raw import to_raw
 from rescue_planner.case.tolerant import value_at
@@ -92,12 +92,7 @@ def _changes(raw: Raw, what_if: WhatIf) -> Iterator[tuple[Path, Any, Any]]:
 
 
 def _held(raw: Raw, path: Path) -> Any:  # noqa: ANN401
-    try:
-        held = get(raw, path)
-    except KeyError:
-        held = None
-    if held is None:
-        held = fields.default_at(path)
+    held = fields.filled_at(raw, path)
     return _derived(raw, path) if held is None else held
 
 

@@ -447,7 +447,7 @@ def test_that_the_fst_of_two_donors_agrees_in_hudsons_form():
 
 
 def test_that_a_donor_has_no_fst_to_itself():
-    path = 'donors[0].fst_to_donors["Upper Fen"]'
+    path = "donors[0].fst_to_donors.Upper Fen"
     assert "itself" in problems_of(changed(full(), path, 0.1))[path]
 
 

@@ -93,9 +93,9 @@ def check_references(raw: Raw) -> Iterator[Problem]:
                 text = f"The frequency of this allele in the donor “{name}” is not said: write it, "
                 yield Problem(where, text + "0 if the donor lacks the allele.")
     for place, donor in parts(raw, "donors"):
-        name = donor.get("name")
-        if isinstance(name, str) and name in mapping(donor, "fst_to_donors"):
-            where = format_path(("donors", place, "fst_to_donors", name))
+        own = donor.get("name")
+        if isinstance(own, str) and own in mapping(donor, "fst_to_donors"):
+            where = format_path(("donors", place, "fst_to_donors", own))
             yield Problem(where, "This is the FST of a donor to itself: remove it.")
 
 

@@ -95,9 +95,7 @@ def _held(raw: dict[str, Any], steps: Path) -> Any:  # noqa: ANN401
 
 
 def _quantity(raw: dict[str, Any], steps: Path) -> dict[str, Any]:
-    held = _held(raw, steps)
-    if held is None:
-        held = fields.default_at(steps)
+    held = fields.filled_at(raw, steps)
     if held is None:
         return {}
     return dict(held) if isinstance(held, dict) else {"best": held}
