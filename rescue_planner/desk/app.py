@@ -10,6 +10,7 @@ from PySide6.QtWidgets import QApplication, QDialog, QDialogButtonBox, QPlainTex
 
 from rescue_planner import __version__
 from rescue_planner.desk import theme
+from rescue_planner.desk.kernels import KernelLoader
 from rescue_planner.desk.recovery import crash_hook
 from rescue_planner.desk.widgets import text
 from rescue_planner.desk.window import NAME, DeskWindow
@@ -25,10 +26,14 @@ def open_desk(case: Path | None = None, arguments: list[str] | None = None) -> i
     app.setApplicationVersion(__version__)
     window = DeskWindow()
     sys.excepthook = crash_hook(window.recovery, lambda report: tell_defect(window, report))
+    kernels = KernelLoader(window)
     window.show()
+    QTimer.singleShot(0, kernels.start)
     if case is not None:
         QTimer.singleShot(0, lambda: window.files.open(case))
-    return app.exec()
+    code = app.exec()
+    kernels.close()
+    return code
 
 
 def tell_defect(window: DeskWindow, report: str) -> None:

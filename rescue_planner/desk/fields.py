@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-from typing import Any
+from collections.abc import Callable, Sequence
+from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QEvent, QObject, QSignalBlocker, Qt, Signal
-from PySide6.QtGui import QFocusEvent, QKeyEvent, QWheelEvent
+from PySide6.QtGui import QFocusEvent, QKeyEvent, QMouseEvent, QResizeEvent, QWheelEvent
 from PySide6.QtWidgets import (
+    QBoxLayout,
     QCheckBox,
     QComboBox,
     QHBoxLayout,
@@ -28,7 +29,12 @@ from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.numbers import range_in_words, read_number, stepped, value_at, written
 
-ORIGIN_MARKS = {"measured": "measured", "borrowed": "borrowed", "guessed": "guessed"}
+if TYPE_CHECKING:
+    from rescue_planner.case.document import Case
+    from rescue_planner.case.edits import Edit
+
+LABEL, NARROW = 27, 70  # widths in letters: of a label, and below which it stands above
+WIDEST = 16_777_215
 
 
 def sentence_of(problems: Sequence[Problem]) -> str:
@@ -39,6 +45,43 @@ def sentence_of(problems: Sequence[Problem]) -> str:
 def definition_of(path: str) -> Input | None:
     """Return the definition of the input at a written path, if it is one."""
     return definition_at(parse_path(path))
+
+
+class FieldRow(QWidget):
+    """A label and what it names, side by side, or one below the other where room is short."""
+
+    def __init__(self, label: QLabel, content: QWidget) -> None:
+        super().__init__()
+        self._label = label
+        label.setObjectName("field-label")
+        label.setWordWrap(True)
+        self._box = QBoxLayout(QBoxLayout.Direction.LeftToRight, self)
+        self._box.setContentsMargins(0, 0, 0, 0)
+        self._box.setSpacing(theme.UNIT)
+        self._box.addWidget(label)
+        self._box.addWidget(content, 1)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self._arrange()
+
+    def changeEvent(self, event: QEvent) -> None:
+        super().changeEvent(event)
+        if event.type() in (QEvent.Type.FontChange, QEvent.Type.StyleChange):
+            self._arrange()
+
+    def _arrange(self) -> None:
+        letter = self._label.fontMetrics().averageCharWidth()
+        narrow = self.width() < letter * NARROW
+        direction = QBoxLayout.Direction
+        wanted = direction.TopToBottom if narrow else direction.LeftToRight
+        if self._box.direction() != wanted:
+            self._box.setDirection(wanted)
+            self._box.setSpacing(0 if narrow else theme.UNIT)
+        width = WIDEST if narrow else letter * LABEL
+        if self._label.maximumWidth() != width:
+            self._label.setMinimumWidth(0 if narrow else width)
+            self._label.setMaximumWidth(width)
 
 
 class NumberEdit(QLineEdit):
@@ -90,7 +133,7 @@ class _Bound(QWidget):
 
     def __init__(self, desk: Desk, path: str, label: str | None, parent: QWidget | None) -> None:
         super().__init__(parent)
-        self.desk, self.path = desk, path
+        self.desk, self.path, self.retired = desk, path, False
         self.definition = definition_of(path)
         name = self.definition.name if self.definition is not None else ""
         self.name = label or name or path.rpartition(".")[2].replace("_", " ").capitalize()
@@ -104,6 +147,12 @@ class _Bound(QWidget):
     def has_problem(self) -> bool:
         """Whether the typed text is not in the case."""
         return not self.problem.isHidden()
+
+    def retire(self) -> None:
+        """Let go of the case before the field is taken away."""
+        self.desk.document.changed.disconnect(self.refresh)
+        self.desk.problems_shown.put(self.path, ())
+        self.retired = True
 
     def held(self) -> Any:  # noqa: ANN401 - whatever stands at the path
         """Return what the case holds at the field's path."""
@@ -191,16 +240,18 @@ class NumberField(_Bound):
             for unused in (self.label, self.unit, self.note):
                 unused.setParent(None)
             return
-        row = QHBoxLayout()
-        row.setSpacing(theme.UNIT)
-        self.label.setObjectName("field-label")
         self.edit.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
-        self.unit.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
-        row.addWidget(self.label)
+        self.unit.setWordWrap(True)
+        self.note.setWordWrap(True)
+        self.note.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
+        content = QWidget()
+        row = QHBoxLayout(content)
+        row.setContentsMargins(0, 0, 0, 0)
+        row.setSpacing(theme.UNIT)
         row.addWidget(self.edit)
-        row.addWidget(self.unit, 1)
-        row.addWidget(self.note)
-        outer.addLayout(row)
+        row.addWidget(self.unit, 3)
+        row.addWidget(self.note, 2)
+        outer.addWidget(FieldRow(self.label, content))
         outer.addWidget(self.problem)
 
     def _connect(self) -> None:
@@ -232,7 +283,7 @@ class NumberField(_Bound):
         if held is None:
             self.note.setText("left out")
             return
-        parts = [range_in_words(held), ORIGIN_MARKS.get(held.origin or "", "")]
+        parts = [range_in_words(held), held.origin or ""]
         self.note.setText(" · ".join(part for part in parts if part))
 
     def _put(self, text: str) -> None:
@@ -256,7 +307,7 @@ class NumberField(_Bound):
 
     def commit(self) -> None:
         """Put the typed number into the case, or say what is wrong with it."""
-        if not (self.edit.isModified() or self.has_problem):
+        if self.retired or not (self.edit.isModified() or self.has_problem):
             return
         text = self.edit.text()
         if not text.strip():
@@ -299,7 +350,7 @@ class NumberField(_Bound):
 
 
 class TextField(_Bound):
-    """A text of the case."""
+    """A text of the case; `make` is its edit where setting the text is not enough (a new name)."""
 
     def __init__(
         self,
@@ -308,11 +359,11 @@ class TextField(_Bound):
         *,
         label: str | None = None,
         lines: int = 1,
-        parent: QWidget | None = None,
+        make: Callable[[Case, str], Edit] | None = None,
     ) -> None:
-        super().__init__(desk, path, label, parent)
+        super().__init__(desk, path, label, None)
+        self._make = make
         self.label = QLabel(self.name)
-        self.label.setObjectName("field-label")
         self.edit: QLineEdit | QPlainTextEdit = (
             QLineEdit(self) if lines == 1 else QPlainTextEdit(self)
         )
@@ -330,11 +381,7 @@ class TextField(_Bound):
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
         outer.setSpacing(2)
-        row = QHBoxLayout()
-        row.setSpacing(theme.UNIT)
-        row.addWidget(self.label, 0, Qt.AlignmentFlag.AlignTop)
-        row.addWidget(self.edit, 1)
-        outer.addLayout(row)
+        outer.addWidget(FieldRow(self.label, self.edit))
         outer.addWidget(self.problem)
 
     def text(self) -> str:
@@ -378,10 +425,16 @@ class TextField(_Bound):
     def commit(self) -> None:
         """Put the typed text into the case."""
         typed = self.text().strip()
+        if self.retired:
+            return
         if typed == str(self.held() or ""):
             self._show_problems(())
             return
-        self._commit(typed or None)
+        if self._make is None:
+            self._commit(typed or None)
+            return
+        make = self._make
+        self._show_problems(self.desk.document.try_edit(lambda case: make(case, typed)))
 
 
 class ChoiceField(_Bound):
@@ -399,21 +452,21 @@ class ChoiceField(_Bound):
         super().__init__(desk, path, label, parent)
         self.choices = tuple(choices)
         self.label = QLabel(self.name)
-        self.label.setObjectName("field-label")
         self.edit = QComboBox(self)
         self.edit.setMinimumHeight(theme.TARGET)
         self.edit.addItems([words for _, words in self.choices])
+        self.edit.setMinimumWidth(theme.UNIT * 12)  # longer words may be cut short, with a list
         self.edit.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self._describe(self.edit, self.label)
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
         outer.setSpacing(2)
-        row = QHBoxLayout()
-        row.setSpacing(theme.UNIT)
-        row.addWidget(self.label)
+        content = QWidget()
+        row = QHBoxLayout(content)
+        row.setContentsMargins(0, 0, 0, 0)
         row.addWidget(self.edit)
         row.addStretch(1)
-        outer.addLayout(row)
+        outer.addWidget(FieldRow(self.label, content))
         outer.addWidget(self.problem)
         self.edit.activated.connect(self._chosen)
         self.edit.installEventFilter(self)
@@ -441,19 +494,36 @@ class ChoiceField(_Bound):
         return super().eventFilter(watched, event)
 
 
+class _Words(QLabel):
+    """The words of a check box, which break over lines and can be clicked too."""
+
+    clicked = Signal()
+
+    def mouseReleaseEvent(self, event: QMouseEvent) -> None:
+        super().mouseReleaseEvent(event)
+        self.clicked.emit()
+
+
 class CheckField(_Bound):
     """A yes or no of the case."""
 
     def __init__(self, desk: Desk, path: str, words: str, *, parent: QWidget | None = None) -> None:
         super().__init__(desk, path, words, parent)
-        self.edit = QCheckBox(words, self)
-        self.edit.setMinimumHeight(theme.TARGET)
-        self._describe(self.edit)
+        self.edit = QCheckBox(self)
+        self.edit.setMinimumSize(theme.TARGET, theme.TARGET)
+        self.label = _Words(words)
+        self.label.setWordWrap(True)
+        self._describe(self.edit, self.label)
+        row = QHBoxLayout()
+        row.setSpacing(theme.HALF)
+        row.addWidget(self.edit)
+        row.addWidget(self.label, 1)
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
         outer.setSpacing(2)
-        outer.addWidget(self.edit)
+        outer.addLayout(row)
         outer.addWidget(self.problem)
+        self.label.clicked.connect(self.edit.click)
         self.edit.clicked.connect(self._clicked)
         self.edit.installEventFilter(self)
         self.refresh()

@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QPointF, QRect, QRectF, QSignalBlocker, QSize, Qt
-from PySide6.QtGui import QColor, QPainter, QPaintEvent, QPen
+from PySide6.QtCore import QEvent, QPointF, QRect, QRectF, QSignalBlocker, QSize, Qt
+from PySide6.QtGui import QColor, QPainter, QPaintEvent, QPen, QResizeEvent
 from PySide6.QtWidgets import QAbstractButton, QButtonGroup, QHBoxLayout, QPushButton, QWidget
 
 from rescue_planner.case.plans import Plan
@@ -15,7 +15,8 @@ from rescue_planner.desk.widgets import rule, text
 from rescue_planner.projection.marks import PlanMark, mark
 
 SAMPLE = 36
-WIDEST_NAME = 26  # in widths of a letter
+NAME_WIDTHS = (28, 22, 17, 13, 10, 7, 4, 0)  # in letters; the widest that fits is taken
+MOST_ROWS = 2
 
 
 class PlanChip(QAbstractButton):
@@ -24,6 +25,7 @@ class PlanChip(QAbstractButton):
     def __init__(self, desk: Desk, name: str, drawn: PlanMark, parent: QWidget) -> None:
         super().__init__(parent)
         self._desk, self.plan, self._mark = desk, name, drawn
+        self.letters = NAME_WIDTHS[0]
         self.setText(name)
         self.setCheckable(True)
         self.setCursor(Qt.CursorShape.PointingHandCursor)
@@ -52,7 +54,7 @@ class PlanChip(QAbstractButton):
 
     def sizeHint(self) -> QSize:
         metrics = self.fontMetrics()
-        most = metrics.averageCharWidth() * WIDEST_NAME
+        most = metrics.averageCharWidth() * self.letters
         letter = metrics.horizontalAdvance("M")
         width = min(metrics.horizontalAdvance(self._label()) + 2, most)
         high = max(theme.TARGET + 4, metrics.height() + theme.UNIT)
@@ -164,6 +166,31 @@ class PlanStrip(QWidget):
         for chip in self.chips:
             self._flow.addWidget(chip)
             chip.show()
+        self._fit()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self._fit()
+
+    def changeEvent(self, event: QEvent) -> None:
+        super().changeEvent(event)
+        if event.type() in (QEvent.Type.FontChange, QEvent.Type.StyleChange):
+            self._fit()
+
+    def _fit(self) -> None:
+        """Shorten names until the chips stand in two rows; the tool tip tells them whole."""
+        if not self.chips or self._held.width() < theme.TARGET:
+            return
+        row = self.chips[0].sizeHint().height()
+        for letters in NAME_WIDTHS:
+            for chip in self.chips:
+                chip.letters = letters
+            high = self._flow.heightForWidth(self._held.width())
+            if high <= MOST_ROWS * (row + theme.UNIT):
+                break
+        for chip in self.chips:
+            chip.updateGeometry()
+        self._flow.invalidate()
         self._held.updateGeometry()
 
     def _view_changed(self) -> None:
@@ -171,5 +198,5 @@ class PlanStrip(QWidget):
             chip.refresh()
         for made, axis in ((self.years, "years"), (self.generations, "generations")):
             made.setChecked(self._desk.view.axis == axis)
-        self._flow.invalidate()
+        self._fit()
         self.update()

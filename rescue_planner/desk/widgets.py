@@ -2,8 +2,17 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QFrame, QLabel, QPushButton, QScrollArea, QWidget
+from PySide6.QtCore import QRect, QSize, Qt
+from PySide6.QtGui import QPainter, QPaintEvent, QPalette, QPen
+from PySide6.QtWidgets import (
+    QAbstractButton,
+    QFrame,
+    QLabel,
+    QPushButton,
+    QScrollArea,
+    QSizePolicy,
+    QWidget,
+)
 
 from rescue_planner.desk import theme
 
@@ -25,17 +34,69 @@ def text(words: str, kind: str = "", *, wrap: bool = True) -> QLabel:
     return label
 
 
-def button(words: str, *, kind: str = "", said: str = "") -> QPushButton:
+def button(words: str, *, kind: str = "", said: str = "") -> QAbstractButton:
     """Return a button; `kind` is empty, primary or link; `said` is its accessible name."""
-    made = QPushButton(words)
-    if kind:
-        made.setObjectName(kind)
+    if kind == "link":
+        made: QAbstractButton = Link(words)
+    else:
+        made = QPushButton(words)
+        made.setAutoDefault(False)
+        if kind:
+            made.setObjectName(kind)
     made.setAccessibleName(said or words)
     made.setMinimumSize(theme.TARGET, theme.TARGET)
-    made.setAutoDefault(False)
-    if kind == "link":
-        made.setCursor(Qt.CursorShape.PointingHandCursor)
     return made
+
+
+class Link(QAbstractButton):
+    """A button that looks like a link and breaks its words over lines where it must."""
+
+    def __init__(self, words: str = "") -> None:
+        super().__init__()
+        self.setText(words)
+        self.setCursor(Qt.CursorShape.PointingHandCursor)
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        policy = QSizePolicy(QSizePolicy.Policy.Maximum, QSizePolicy.Policy.Preferred)
+        policy.setHeightForWidth(True)
+        self.setSizePolicy(policy)
+
+    def setText(self, words: str) -> None:
+        super().setText(words)
+        self.updateGeometry()
+
+    def _needs(self, width: int) -> QSize:
+        flags = Qt.TextFlag.TextWordWrap.value | Qt.AlignmentFlag.AlignLeft.value
+        size = (
+            self.fontMetrics().boundingRect(QRect(0, 0, width, 10_000), flags, self.text()).size()
+        )
+        return QSize(size.width() + 2, max(size.height() + 6, theme.TARGET))
+
+    def sizeHint(self) -> QSize:
+        return self._needs(10_000)
+
+    def minimumSizeHint(self) -> QSize:
+        longest = max(self.text().split() or [""], key=len)
+        width = self.fontMetrics().horizontalAdvance(longest) + 4
+        return QSize(max(width, theme.TARGET), theme.TARGET)
+
+    def heightForWidth(self, width: int) -> int:
+        return self._needs(width - 2).height()
+
+    def paintEvent(self, _event: QPaintEvent) -> None:
+        painter = QPainter(self)
+        colours = self.palette()
+        group = QPalette.ColorGroup.Normal if self.isEnabled() else QPalette.ColorGroup.Disabled
+        role = QPalette.ColorRole.Link if self.isEnabled() else QPalette.ColorRole.Text
+        made = self.font()
+        made.setUnderline(self.isEnabled())
+        painter.setFont(made)
+        painter.setPen(colours.color(group, role))
+        flags = Qt.TextFlag.TextWordWrap.value | Qt.AlignmentFlag.AlignVCenter.value
+        painter.drawText(self.rect().adjusted(0, 1, -1, -1), flags, self.text())
+        if self.hasFocus():
+            painter.setPen(QPen(colours.color(QPalette.ColorRole.Highlight), 2))
+            painter.drawRect(self.rect().adjusted(1, 1, -1, -1))
+        painter.end()
 
 
 def scrolled(inner: QWidget) -> QScrollArea:

@@ -71,7 +71,8 @@ class DeskWindow(QMainWindow):
         middle.addWidget(self.rail)
         middle.addWidget(rule(upright=True))
         middle.addWidget(self.stack, 1)
-        middle.addWidget(rule(upright=True))
+        self.explainer_rule = rule(upright=True)
+        middle.addWidget(self.explainer_rule)
         middle.addWidget(self.explainer)
         whole = QWidget()
         column = QVBoxLayout(whole)
@@ -194,7 +195,9 @@ class DeskWindow(QMainWindow):
                 self._forget(page.key)
 
     def _show_explainer(self) -> None:
-        self.explainer.setVisible(self.settings.explainer and self.desk.document.has_case)
+        shown = self.settings.explainer and self.desk.document.has_case
+        self.explainer.setVisible(shown)
+        self.explainer_rule.setVisible(shown)
 
     def toggle_explainer(self) -> None:
         """Hide or show the explainer."""

@@ -242,11 +242,14 @@ class KnownPage(QWidget):
                 sentence = sentence_of(wrong.problems)
         self.problem.setText(f"⚠ {sentence}" if sentence else "")
         self.workings.setText(
-            "\n\n".join(self.draft.workings)
-            if self.draft is not None
-            else "Begin with the number of adults."
+            "\n\n".join(self.draft.workings) if self.draft is not None else self._waiting_for()
         )
         self.start.setEnabled(self.draft is not None)
+
+    def _waiting_for(self) -> str:
+        if any(not question.problem.isHidden() for question in self.questions.values()):
+            return "One answer cannot be read; what is wrong stands below it."
+        return "Begin with the number of adults."
 
     def _known(self) -> Known | None:
         """Return the answers, or nothing while one of them is wrong or the adults are missing."""

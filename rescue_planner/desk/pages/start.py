@@ -120,10 +120,7 @@ class StartPage(QWidget):
             link = button(title, kind="link", said=f"Open the shipped case: {title}")
             link.clicked.connect(lambda _=False, path=path: self._files.open_shipped(path))
             self.links.append(link)
-            line = QHBoxLayout()
-            line.addWidget(link)
-            line.addStretch(1)
-            self._column.addLayout(line)
+            self._column.addWidget(link)
             if species:
                 self._column.addWidget(text(species, "soft"))
             if question:
