@@ -8,13 +8,21 @@ from datetime import UTC, datetime
 from pathlib import Path
 
 from rescue_planner.advice.targets import target_checks, target_checks_csv
+from rescue_planner.annex.blocks import Illustration
+from rescue_planner.annex.document import docx_bytes
+from rescue_planner.annex.page import html_text
 from rescue_planner.annex.pictures import captions_text, draw, pictures
-from rescue_planner.annex.record import Occasion, Remark, record_text
+from rescue_planner.annex.record import Occasion, record_text
+from rescue_planner.annex.report import Content, report
 from rescue_planner.annex.sheet import WIDTHS_MM
 from rescue_planner.annex.writing import ExportError, made, put
 from rescue_planner.case.document import Case
+from rescue_planner.case.remarks import Remark
 from rescue_planner.projection.results import Comparison
 from rescue_planner.projection.table import comparison_csv
+
+# projection.csv, target_checks.csv, captions.md, annex.docx, annex.html, record.json
+_OTHER_FILES = 6
 
 __all__ = ["ExportError", "Written", "write_run"]
 
@@ -86,7 +94,7 @@ def write_run(
     began = datetime.now(UTC) if started is None else started
     shown = [key for key in comparison.measures if measures is None or key in measures]
     found = pictures(case, comparison, shown)
-    total = 6 + 3 * len(WIDTHS_MM) * len(found)
+    total = _OTHER_FILES + 3 * len(WIDTHS_MM) * len(found)
     step = checkpoint if checkpoint is not None else lambda done, total: None
     out = _Folder(Path(folder))
     step(0, total)
@@ -94,9 +102,27 @@ def write_run(
     out.put("target_checks.csv", target_checks_csv(target_checks(case, comparison)))
     made(out.folder / "figures")
     out.put("figures/captions.md", captions_text(found))
+    figures: list[Illustration] = []
     for drawn in draw(case, comparison, found, lambda done: step(3 + 3 * done, total)):
         for kind, content in drawn.files.items():
             out.put(f"figures/{drawn.picture.stem}_{drawn.width}mm.{kind}", content)
+        if drawn.width == max(WIDTHS_MM):
+            held = drawn.files["svg"], drawn.files["png"]
+            figures.append(Illustration(len(figures) + 1, drawn.picture, *held))
+    step(total - 3, total)
+    whole = report(
+        Content(
+            case=case,
+            comparison=comparison,
+            measures=tuple(shown),
+            figures=tuple(figures),
+            remarks=tuple(remarks),
+            occasion=Occasion(began, datetime.now(UTC)),
+        )
+    )
+    out.put("annex.docx", docx_bytes(whole, began))
+    step(total - 2, total)
+    out.put("annex.html", html_text(whole))
     step(total - 1, total)
     occasion = Occasion(began, datetime.now(UTC))
     out.put("record.json", record_text(case, comparison, remarks, occasion, out.hashes))

@@ -25,9 +25,7 @@ _MARKER_MM = 3.6
 _NAME_MM = 5.2
 
 
-def scales(
-    case: Case, comparison: Comparison, measure: str, years: int, values: int = 5
-) -> Scales:
+def scales(case: Case, comparison: Comparison, measure: str, years: int, values: int = 5) -> Scales:
     """Return the scales of one measure, the same for all plans, with about so many ticks."""
     first, last = float(comparison.years[0]), float(comparison.years[-1])
     lines = curves(comparison, measure)
@@ -106,9 +104,7 @@ def write_names(
     return [(c - h / 2, c + h / 2) for c, h in zip(centres, heights, strict=True)]
 
 
-def _names(
-    frame: Frame, comparison: Comparison, lines: Sequence[Curve]
-) -> list[tuple[str, ...]]:
+def _names(frame: Frame, comparison: Comparison, lines: Sequence[Curve]) -> list[tuple[str, ...]]:
     """Return the label of each line, in as many rows as all of them have room for."""
     paper = frame.paper
     high = paper.height - 3.0
@@ -123,9 +119,7 @@ def _names(
     return found
 
 
-def _name(
-    frame: Frame, line: Curve, rows: Sequence[str], place: tuple[float, float]
-) -> None:
+def _name(frame: Frame, line: Curve, rows: Sequence[str], place: tuple[float, float]) -> None:
     """Write one label; `place` is the height of the line's end and of the label's centre."""
     colour, wide = line.mark.light, frame.wide
     if not ended(line):

@@ -46,9 +46,7 @@ class Frame:
         self.wide = paper.width - paper.left - paper.right
         self.tall = paper.height - paper.bottom - paper.top
         left, low = corner
-        self._mm = (
-            Affine2D().translate(left, low).scale(1 / MM_PER_INCH) + figure.dpi_scale_trans
-        )
+        self._mm = Affine2D().translate(left, low).scale(1 / MM_PER_INCH) + figure.dpi_scale_trans
 
     def across(self, year: ArrayLike) -> Any:  # noqa: ANN401 - a number, or an array of them
         """Return where years lie, in millimetres from the left of the plot."""

@@ -125,9 +125,7 @@ def _words(frame: Frame, words: str) -> None:
     """Write a panel's axis title above it."""
     paper = frame.paper
     rows = wrapped(words, paper.width - 1.5, lambda text: text_width(text, paper.text), 2)
-    frame.text(
-        0.8 - paper.left, frame.tall + 1.0, "\n".join(rows), va="bottom", linespacing=1.1
-    )
+    frame.text(0.8 - paper.left, frame.tall + 1.0, "\n".join(rows), va="bottom", linespacing=1.1)
 
 
 def _key(

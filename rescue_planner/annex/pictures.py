@@ -38,9 +38,7 @@ class Drawn:
     files: dict[str, bytes]
 
 
-def pictures(
-    case: Case, comparison: Comparison, measures: Sequence[str]
-) -> tuple[Picture, ...]:
+def pictures(case: Case, comparison: Comparison, measures: Sequence[str]) -> tuple[Picture, ...]:
     """Return the figures of a run, the overview first."""
     drawn = [key for key in measures if curves(comparison, key)]
     if not drawn:

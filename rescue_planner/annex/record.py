@@ -9,11 +9,12 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from datetime import UTC, datetime
 from importlib.metadata import PackageNotFoundError, version
-from typing import Any, Protocol
+from typing import Any
 
 from rescue_planner.advice.targets import not_checked
-from rescue_planner.case.document import Answer, Case, WhatIf
+from rescue_planner.case.document import Case, WhatIf
 from rescue_planner.case.raw import to_raw
+from rescue_planner.case.remarks import Remark, answer_to
 from rescue_planner.projection.results import Comparison
 
 LIBRARIES = (
@@ -27,22 +28,6 @@ LIBRARIES = (
     "fonttools",
     "pillow",
 )
-
-
-class Remark(Protocol):
-    """What the annex needs to know of a remark: a stable key, a path and a sentence."""
-
-    @property
-    def key(self) -> str:
-        """Return what an answer refers to."""
-
-    @property
-    def path(self) -> str:
-        """Return where in the case it points."""
-
-    @property
-    def text(self) -> str:
-        """Return the sentence."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -79,17 +64,11 @@ def machine() -> dict[str, Any]:
     }
 
 
-def answers(case: Case) -> dict[str, Answer]:
-    """Return the reasons given for remarks, by the remark's key; the last one given counts."""
-    return {answer.remark: answer for answer in case.answers}
-
-
 def remark_rows(case: Case, remarks: Sequence[Remark]) -> list[dict[str, Any]]:
     """Return each remark with its answer, or nothing where none was given."""
-    given = answers(case)
     rows = []
     for remark in remarks:
-        answer = given.get(remark.key)
+        answer = answer_to(case, remark)
         rows.append(
             {
                 "key": remark.key,

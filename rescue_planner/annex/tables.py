@@ -1,0 +1,203 @@
+"""The tables of the annex: plans compared, targets, inputs."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from rescue_planner.advice.targets import TargetCheck
+from rescue_planner.annex.blocks import Table
+from rescue_planner.annex.curves import ends_with_the_last_animal
+from rescue_planner.annex.inputs import InputRow, input_rows
+from rescue_planner.annex.numerals import decimal, given, value_text, year_text
+from rescue_planner.annex.schedule import bound_text
+from rescue_planner.annex.wording import axis_title, one_line, plan_label
+from rescue_planner.case.document import Case, Target
+from rescue_planner.case.measures import title
+from rescue_planner.case.paths import parse_path
+from rescue_planner.projection.results import DEPTH_NAMES, Comparison
+
+# Generations from the start at which the plans are compared, besides the horizon.
+GENERATIONS = (0, 1, 2, 3, 5, 10)
+GONE = "gone"
+
+
+def horizon_table(comparison: Comparison, measures: Sequence[str]) -> Table:
+    """Return every measure at the horizon, a column for each plan."""
+    last = comparison.years.size - 1
+    return Table(
+        caption=f"Plans at the horizon, {year_text(float(comparison.years[last]))} "
+        f"(generation {last})",
+        head=("Measure (unit)", "Depth", "Today", *_plan_heads(comparison)),
+        rows=tuple(_horizon_row(comparison, key, last) for key in measures),
+        numbers=frozenset(range(2, 3 + len(comparison.plans))),
+    )
+
+
+def _plan_heads(comparison: Comparison) -> tuple[str, ...]:
+    return tuple(plan_label(comparison, plan) for plan in comparison.plans)
+
+
+def _horizon_row(comparison: Comparison, key: str, last: int) -> tuple[str, ...]:
+    series = [comparison.best(plan, key) for plan in comparison.plans]
+    first = next((one for one in series if one is not None), None)
+    start = "–" if first is None else value_text(key, float(first.values[0]))
+    depth = "–" if first is None else DEPTH_NAMES[first.depth]
+    cells = (_cell(comparison, plan, key, last) for plan in comparison.plans)
+    return axis_title(comparison, key), depth, start, *cells
+
+
+def _cell(comparison: Comparison, plan: str, key: str, t: int) -> str:
+    """Return a value with its 5 to 95 % range where there is one; `gone` where none is left."""
+    series = comparison.best(plan, key)
+    if series is None:
+        return "not computed"
+    end = comparison.gone_after(plan)
+    if end is not None and t >= end and ends_with_the_last_animal(key):
+        return GONE
+    value = value_text(key, float(series.values[t]))
+    low, high = (comparison.get(plan, series.depth, key, q) for q in ("q05", "q95"))
+    if low is None or high is None or t == 0:
+        return value
+    between = " to ".join(value_text(key, float(q.values[t])) for q in (low, high))
+    return f"{value} ({between})"
+
+
+def chosen_steps(comparison: Comparison) -> tuple[int, ...]:
+    """Return the t at which plans are compared: the start, some generations, the horizon."""
+    last = comparison.years.size - 1
+    return (*(t for t in GENERATIONS if t < last), last)
+
+
+def course_tables(comparison: Comparison, measures: Sequence[str]) -> tuple[Table, ...]:
+    """Return a table for each measure: years down, plans across."""
+    return tuple(_course_table(comparison, key) for key in measures)
+
+
+def _course_table(comparison: Comparison, key: str) -> Table:
+    rows = []
+    for t in chosen_steps(comparison):
+        cells = (_cell(comparison, plan, key, t) for plan in comparison.plans)
+        rows.append((year_text(float(comparison.years[t])), str(t), *cells))
+    return Table(
+        caption=f"{axis_title(comparison, key)}",
+        head=("Year", "Generation", *_plan_heads(comparison)),
+        rows=tuple(rows),
+        numbers=frozenset(range(1, 2 + len(comparison.plans))),
+    )
+
+
+def target_table(case: Case, comparison: Comparison, checks: Sequence[TargetCheck]) -> Table | None:
+    """Return every target check as a row, or nothing where there is none."""
+    if not checks:
+        return None
+    return Table(
+        caption="Target checks, plan by plan",
+        head=("Target", "Owner", "Plan", "Depth", "Year read", "Value (target’s unit)", "Met"),
+        rows=tuple(
+            (
+                target_words(case, check.target, case.targets[check.target - 1]),
+                one_line(case.targets[check.target - 1].owner or "not stated"),
+                plan_label(comparison, check.plan),
+                DEPTH_NAMES[check.depth],
+                year_text(check.year),
+                value_text(check.measure, check.value),
+                _met(check),
+            )
+            for check in checks
+        ),
+        numbers=frozenset({4, 5}),
+    )
+
+
+def _met(check: TargetCheck) -> str:
+    if check.runs is None or check.share is None:
+        return {True: "yes", False: "no", None: "–"}[check.met]
+    interval = ""
+    if check.low is not None and check.high is not None:
+        interval = f" ({decimal(100 * check.low, 1)} to {decimal(100 * check.high, 1)} %)"
+    met = round(check.share * check.runs)
+    return f"{met} of {check.runs} runs, {decimal(100 * check.share, 1)} %{interval}"
+
+
+def target_words(case: Case, number: int, target: Target) -> str:
+    """Return a target as words, such as `1: Donor ancestry at most 30 % of gene copies by 2086`."""
+    bounds = [
+        f"{word} {bound_text(case, target.measure, bound)}"
+        for word, bound in (("at least", target.at_least), ("at most", target.at_most))
+        if bound is not None
+    ]
+    try:
+        name = one_line(title(target.measure))
+    except KeyError:
+        name = one_line(target.measure)
+    return f"{number}: {name} {' and '.join(bounds)} by {given(target.by_year.best)}"
+
+
+_INPUT_HEAD = (
+    "Input",
+    "Value",
+    "Range and shape",
+    "Unit",
+    "Origin",
+    "Source",
+    "Date",
+    "Person",
+    "Path in the case file",
+)
+_GROUPS = {
+    "time": "Time",
+    "recipient": "Recipient",
+    "life_cycle": "Life cycle",
+    "inbreeding_cost": "Inbreeding cost",
+    "load": "Hidden load",
+    "mixing_cost": "Mixing cost",
+    "genome": "Genome",
+    "trait": "Trait",
+    "run": "Run",
+}
+_LISTS = {
+    "donors": "Donor",
+    "loci": "Tracked locus",
+    "plans": "Plan",
+    "what_ifs": "What-if",
+    "targets": "Target",
+}
+
+
+def input_tables(case: Case) -> tuple[Table, ...]:
+    """Return every input of the case, one table for each part of it."""
+    groups: dict[str, list[InputRow]] = {}
+    for row in input_rows(case):
+        groups.setdefault(_group(case, row.path), []).append(row)
+    return tuple(
+        Table(
+            caption=f"Inputs: {name}",
+            head=_INPUT_HEAD,
+            rows=tuple(_input_row(row) for row in rows),
+        )
+        for name, rows in groups.items()
+    )
+
+
+def _group(case: Case, path: str) -> str:
+    steps = parse_path(path)
+    first = str(steps[0])
+    if first in _LISTS and len(steps) > 1 and isinstance(steps[1], int):
+        held = getattr(case, first)[steps[1]]
+        name = getattr(held, "name", str(steps[1] + 1))
+        return f"{_LISTS[first]} {one_line(name)}" if first != "targets" else "Targets"
+    return _GROUPS.get(first, "Case")
+
+
+def _input_row(row: InputRow) -> tuple[str, ...]:
+    return (
+        row.name,
+        row.value,
+        row.spread or "–",
+        row.unit or "–",
+        row.origin,
+        row.source or "–",
+        row.date or "–",
+        row.by or "–",
+        row.path,
+    )
