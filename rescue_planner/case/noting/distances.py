@@ -118,7 +118,7 @@ def _assumed(case: Case, whole: NDArray[np.float64], names: list[str]) -> Iterat
             whole[i, j] = whole[j, i] = between
             yield Remark(
                 "fst-assumed",
-                f"donors[{i - 1}].fst_to_donors",
+                format_path(("donors", i - 1, "fst_to_donors", names[j])),
                 f"The FST between the donors {names[j]} and {names[i]} was not given. From their "
                 f"distances to the recipient it is taken as {1 - mean / between:.3f} (Hudson’s "
                 "form). It matters only where animals of both are released.",
