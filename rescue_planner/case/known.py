@@ -220,7 +220,7 @@ def _diversities(
     known: Known, size: Raw, length: float | Raw, years: Raw, said: list[str]
 ) -> tuple[float | Raw, float | Raw]:
     """Return the reference and today's gene diversity."""
-    n, t, y = size["best"], _best(length), years["best"]
+    n, t, y = float(size["best"]), _best(length), float(years["best"])
     kept = _kept(n, y, t)
     sum_ = f"(1 − 1/(2 · {_n(n)}))^({_n(y)}/{_n(t)})"
     if known.reference_gene_diversity is not None:
@@ -237,8 +237,8 @@ def _diversities(
     if known.gene_diversity is not None:
         return reference, known.gene_diversity
     top = _best(reference)
-    least = _kept(size.get("low", n), years.get("high", y), t)
-    most = _kept(size.get("high", n), years.get("low", y), t)
+    least = _kept(float(size.get("low", n)), float(years.get("high", y)), t)
+    most = _kept(float(size.get("high", n)), float(years.get("low", y)), t)
     said.append(f"Gene diversity from isolation: {_n(top)} · {sum_} = {_n(top * kept)}.")
     today = {
         "best": _r(top * kept),

@@ -9,9 +9,9 @@ from PySide6.QtCore import QSignalBlocker, Qt
 from PySide6.QtWidgets import QComboBox, QGridLayout, QLabel, QLineEdit, QVBoxLayout, QWidget
 
 from rescue_planner.case import measures
-from rescue_planner.case.fields import definition_at
+from rescue_planner.case.fields import definition_at, model_at
 from rescue_planner.case.inputs import Input
-from rescue_planner.case.paths import parse_path
+from rescue_planner.case.paths import parse_path, steps_of
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
@@ -107,16 +107,25 @@ class Explainer(QWidget):
         self._say(self._published, f"{published}{source}".strip())
 
     def _show_measure(self, key: str) -> None:
+        for label in (self._unit, self._bounds, self._published, self._caution):
+            self._say(label, "")
         try:
             measure = measures.measure_of(key)
         except KeyError:
-            self._clear()
+            self._show_words(key)
             return
-        for label in (self._bounds, self._published, self._caution):
-            self._say(label, "")
         self._say(self._heading, measures.title(key))
         self._say(self._unit, measures.unit(key))
         self._say(self._meaning, measure.meaning)
+        self._origin.show_value("", None)
+
+    def _show_words(self, path: str) -> None:
+        """Explain a field that is no number by what the part of the case it stands in is."""
+        steps = steps_of(path)
+        model = model_at(steps[:-1])
+        words = str(steps[-1]).replace("_", " ").capitalize()
+        self._say(self._heading, words)
+        self._say(self._meaning, ((model.__doc__ if model else "") or OPENING).splitlines()[0])
         self._origin.show_value("", None)
 
     def _refresh(self) -> None:

@@ -170,8 +170,15 @@ class _Bound(QWidget):
         if label is not None:
             label.setBuddy(target)
 
+    def unit_words(self) -> str:
+        """Return the unit shown beside the field."""
+        own: str | None = getattr(self, "_unit", None)
+        if own is not None:
+            return own
+        return self.definition.unit if self.definition is not None else ""
+
     def _spoken_name(self) -> str:
-        unit = self.definition.unit if self.definition is not None else ""
+        unit = self.unit_words()
         return f"{self.name}, {unit}" if unit not in ("", "–") else self.name
 
     def _spoken_description(self) -> str:
@@ -210,17 +217,19 @@ class NumberField(_Bound):
         *,
         compact: bool = False,
         label: str | None = None,
+        unit: str | None = None,
         parent: QWidget | None = None,
     ) -> None:
         super().__init__(desk, path, label, parent)
         self.compact = compact
+        self._unit = unit
         self.edit = NumberEdit(self)
         self.edit.setObjectName("compact-number" if compact else "number")
         self.edit.setAlignment(
             Qt.AlignmentFlag.AlignCenter if compact else Qt.AlignmentFlag.AlignRight
         )
         self.label = QLabel(self.name)
-        self.unit = QLabel(self.definition.unit if self.definition is not None else "")
+        self.unit = QLabel(self.unit_words())
         self.unit.setObjectName("unit")
         self.note = QLabel()
         self.note.setObjectName("note")
@@ -371,6 +380,9 @@ class TextField(_Bound):
         self.edit.setMinimumHeight(theme.TARGET)
         if isinstance(self.edit, QPlainTextEdit):
             self.edit.setTabChangesFocus(True)
+            self.edit.document().setDocumentMargin(2)
+            self.label.setAlignment(Qt.AlignmentFlag.AlignTop | Qt.AlignmentFlag.AlignLeft)
+            self.label.setContentsMargins(0, theme.HALF, 0, 0)
             self.edit.setFixedHeight(self.edit.fontMetrics().lineSpacing() * lines + 12)
         self._describe(self.edit, self.label)
         self._lay_out()
@@ -444,7 +456,7 @@ class ChoiceField(_Bound):
         self,
         desk: Desk,
         path: str,
-        choices: Sequence[tuple[object, str]],
+        choices: Sequence[tuple[str | None, str]],
         *,
         label: str | None = None,
         parent: QWidget | None = None,

@@ -10,6 +10,7 @@ import os
 import sys
 import tempfile
 from collections.abc import Callable, Sequence
+from functools import partial
 from pathlib import Path
 
 from rescue_planner import places
@@ -65,7 +66,7 @@ class Gallery:
         for path in cases:
             self.window.files.open_shipped(path)
             self._wait_for_comparison()
-            self._looks(lambda look, path=path: self._pages(path.stem, look))
+            self._looks(partial(self._pages, path.stem))
         self._error_states(cases[0])
         self.window.files.may_close = lambda: True  # type: ignore[method-assign]
         self.window.close()
@@ -97,6 +98,7 @@ class Gallery:
         if not isinstance(case_page, CasePage):
             return
         self.window.show_page("case")
+        self.window.activateWindow()
         for section in ("Recipient", "Donors", "Life cycle", "Tracked loci", "Targets"):
             case_page.go_to(section)
             self._settle()
@@ -129,16 +131,19 @@ class Gallery:
 
     def _error_states(self, path: Path) -> None:
         from rescue_planner.desk.fields import NumberField
+        from rescue_planner.desk.pages.case import CasePage
 
         self._unreadable()
         self.window.files.open_shipped(path)
         self.window.show_page("case")
         self._settle()
+        page = self.window.pages["case"]
+        assert isinstance(page, CasePage)
+        page.go_to("Recipient")
         field = next(
-            one
-            for one in self.window.pages["case"].findChildren(NumberField)
-            if one.path == "recipient.effective_size"
+            one for one in page.findChildren(NumberField) if one.path == "recipient.effective_size"
         )
+        self.window.activateWindow()
         field.edit.setFocus()
         field.edit.setText("4000")
         field.edit.setModified(True)

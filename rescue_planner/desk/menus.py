@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -74,13 +75,13 @@ class Menus(QObject):
         self.shipped.clear()
         for path in sorted(places.scenarios().glob("*.json")):
             words = path.stem.replace("-", " ").capitalize()
-            action(self.shipped, words, lambda path=path: self._window.files.open_shipped(path))
+            action(self.shipped, words, partial(self._window.files.open_shipped, path))
 
     def _fill_recent(self) -> None:
         self.recent.clear()
         for name in self._window.settings.recent:
             path = Path(name)
-            action(self.recent, path.name, lambda path=path: self._window.files.open(path))
+            action(self.recent, path.name, partial(self._window.files.open, path))
         if not self._window.settings.recent:
             self.recent.addAction("none yet").setEnabled(False)
 
@@ -99,7 +100,7 @@ class Menus(QObject):
         menu, view = self._menu("&View"), self._window.desk.view
         self.schemes = QActionGroup(self)
         for scheme, words in (("light", "&Light"), ("dark", "&Dark"), ("system", "As the &system")):
-            made = action(menu, words, lambda one=scheme: self._window.choose_scheme(one))
+            made = action(menu, words, partial(self._window.choose_scheme, scheme))
             made.setCheckable(True)
             made.setData(scheme)
             self.schemes.addAction(made)
@@ -108,7 +109,7 @@ class Menus(QObject):
         self.sizes = QActionGroup(self)
         for scale in TEXT_SCALES:
             words = f"{scale:.0%}".replace("%", " %")
-            made = action(sizes, words, lambda one=scale: view.set_text_scale(one))
+            made = action(sizes, words, partial(view.set_text_scale, scale))
             made.setCheckable(True)
             made.setData(scale)
             self.sizes.addAction(made)
@@ -117,7 +118,7 @@ class Menus(QObject):
         menu.addSeparator()
         self.axes = QActionGroup(self)
         for axis, words in (("years", "Time in &years"), ("generations", "Time in &generations")):
-            made = action(menu, words, lambda one=axis: view.set_axis(one))  # type: ignore[arg-type]
+            made = action(menu, words, partial(view.set_axis, axis))  # type: ignore[arg-type]
             made.setCheckable(True)
             made.setData(axis)
             self.axes.addAction(made)
@@ -138,7 +139,7 @@ class Menus(QObject):
             made = action(
                 self.plans,
                 plan.name,
-                lambda name=plan.name, shown=shown: desk.view.set_hidden(name, shown),
+                partial(desk.view.set_hidden, plan.name, shown),
             )
             made.setCheckable(True)
             made.setChecked(shown)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QEvent, QPointF, QRect, QRectF, QSignalBlocker, QSize, Qt
+from PySide6.QtCore import QEvent, QPointF, QRect, QRectF, QSignalBlocker, QSize, Qt, QTimer
 from PySide6.QtGui import QColor, QPainter, QPaintEvent, QPen, QResizeEvent
 from PySide6.QtWidgets import QAbstractButton, QButtonGroup, QHBoxLayout, QPushButton, QWidget
 
@@ -125,6 +125,10 @@ class PlanStrip(QWidget):
         row.addWidget(self.generations)
         row.addWidget(rule(upright=True))
         row.addWidget(self.what_if)
+        self._later = QTimer(self)  # fonts of the chips follow the strip's own a moment later
+        self._later.setSingleShot(True)
+        self._later.setInterval(0)
+        self._later.timeout.connect(self._fit)
         self._group = QButtonGroup(self)
         self._group.addButton(self.years)
         self._group.addButton(self.generations)
@@ -166,7 +170,7 @@ class PlanStrip(QWidget):
         for chip in self.chips:
             self._flow.addWidget(chip)
             chip.show()
-        self._fit()
+        self._later.start()
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)
@@ -174,8 +178,11 @@ class PlanStrip(QWidget):
 
     def changeEvent(self, event: QEvent) -> None:
         super().changeEvent(event)
-        if event.type() in (QEvent.Type.FontChange, QEvent.Type.StyleChange):
-            self._fit()
+        if hasattr(self, "_later") and event.type() in (
+            QEvent.Type.FontChange,
+            QEvent.Type.StyleChange,
+        ):
+            self._later.start()
 
     def _fit(self) -> None:
         """Shorten names until the chips stand in two rows; the tool tip tells them whole."""
@@ -185,12 +192,10 @@ class PlanStrip(QWidget):
         for letters in NAME_WIDTHS:
             for chip in self.chips:
                 chip.letters = letters
+                chip.updateGeometry()  # or the layout keeps the size it knows
             high = self._flow.heightForWidth(self._held.width())
             if high <= MOST_ROWS * (row + theme.UNIT):
                 break
-        for chip in self.chips:
-            chip.updateGeometry()
-        self._flow.invalidate()
         self._held.updateGeometry()
 
     def _view_changed(self) -> None:
@@ -198,5 +203,5 @@ class PlanStrip(QWidget):
             chip.refresh()
         for made, axis in ((self.years, "years"), (self.generations, "generations")):
             made.setChecked(self._desk.view.axis == axis)
-        self._fit()
+        self._later.start()
         self.update()

@@ -99,6 +99,15 @@ class Link(QAbstractButton):
         painter.end()
 
 
+def bring_into_view(widget: QWidget) -> None:
+    """Scroll the areas around a widget so that it can be seen."""
+    above = widget.parentWidget()
+    while above is not None:
+        if isinstance(above, QScrollArea):
+            above.ensureWidgetVisible(widget, theme.UNIT, theme.UNIT * 6)
+        above = above.parentWidget()
+
+
 def scrolled(inner: QWidget) -> QScrollArea:
     """Return `inner` in an area that scrolls down only."""
     area = QScrollArea()

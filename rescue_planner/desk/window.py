@@ -24,7 +24,7 @@ from rescue_planner.desk.recovery import Recovery
 from rescue_planner.desk.remark_list import RemarkDialog, RemarkFinder, answered
 from rescue_planner.desk.settings import Settings
 from rescue_planner.desk.view import TEXT_SCALES, Scheme
-from rescue_planner.desk.widgets import rule
+from rescue_planner.desk.widgets import bring_into_view, rule
 from rescue_planner.desk.work_strip import WorkStrip
 
 NAME = "Rescue Planner"
@@ -257,10 +257,14 @@ class DeskWindow(QMainWindow):
 
     def _to_first_problem(self) -> None:
         first = next(iter(self.desk.problems_shown.shown), "")
-        for field in self.findChildren(QWidget):
-            if field.property("path") == first and field.isVisible():
-                field.setFocus(Qt.FocusReason.ShortcutFocusReason)
-                return
+        order = sorted(self.pages, key=lambda key: key != self.current)
+        for key in order:
+            for field in self.pages[key].findChildren(QWidget):
+                if field.property("path") == first and not field.isHidden():
+                    self.show_page(key)
+                    field.setFocus(Qt.FocusReason.ShortcutFocusReason)
+                    bring_into_view(field)
+                    return
 
     def next_region(self) -> None:
         """Move the focus to the next part of the window."""

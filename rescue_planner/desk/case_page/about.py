@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import partial
+
 from rescue_planner.case import measures
 from rescue_planner.case.document import Case
 from rescue_planner.case.edits import Edit, add_target, remove_target
@@ -39,16 +41,28 @@ def _targets(section: Section, case: Case) -> None:
     for i, target in enumerate(case.targets):
         section.part(
             f"Target {i + 1}",
-            lambda case, i=i: remove_target(case, i),
+            partial(_without, index=i),
             f"Remove target {i + 1}, {_title(target.measure)}",
         )
         section.choice(f"targets[{i}].measure", "Measure", choices)
-        section.number(f"targets[{i}].at_least")
-        section.number(f"targets[{i}].at_most")
+        unit = _unit(case, target.measure)
+        section.number(f"targets[{i}].at_least", unit=unit)
+        section.number(f"targets[{i}].at_most", unit=unit)
         section.number(f"targets[{i}].by_year", "Checked in")
         section.text(f"targets[{i}].owner", "Who wants it")
         section.text(f"targets[{i}].reason", "Reason", lines=2)
-    section.actions(("Add a target", _new_target))
+    section.buttons(("Add a target", _new_target))
+
+
+def _without(case: Case, index: int) -> Edit:
+    return remove_target(case, index)
+
+
+def _unit(case: Case, key: str) -> str:
+    """Return the unit a bound is typed in: shares from 0 to 1, the rest as they are shown."""
+    if measures.measure_of(key).kind == "share":
+        return "share, 0 to 1"
+    return measures.unit(key, case.currency)
 
 
 def _title(key: str) -> str:
@@ -68,6 +82,10 @@ TARGETS = SectionPlan(
     "Targets",
     "A bound on a measure that somebody wants met by a year. Shares are entered from 0 to 1. "
     "Say who wants it and why: a bound is a choice of people, not a result.",
-    lambda case: (len(case.targets), tuple(measures.keys(case)), case.currency),
+    lambda case: (
+        tuple(target.measure for target in case.targets),
+        tuple(measures.keys(case)),
+        case.currency,
+    ),
     _targets,
 )

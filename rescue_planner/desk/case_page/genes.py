@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import partial
+
 from rescue_planner.case.document import Case
 from rescue_planner.case.edits import Edit, add_locus, remove_locus, rename_locus, set_value
 from rescue_planner.case.paths import format_path
@@ -16,11 +18,11 @@ GENOTYPES = ("AA", "Aa", "aa")
 def _loci(section: Section, case: Case) -> None:
     for i, locus in enumerate(case.loci):
         name, at = locus.name, f"loci[{i}]"
-        section.part(name, lambda case, name=name: remove_locus(case, name))
+        section.part(name, partial(_without, name=name))
         section.text(
             f"{at}.name",
             "Name",
-            make=lambda case, new, name=name: rename_locus(case, name, new),
+            make=partial(_renamed, name=name),
         )
         section.choice(f"{at}.role", "Role of the named allele", ROLES)
         for k, genotype in enumerate(GENOTYPES):
@@ -30,7 +32,15 @@ def _loci(section: Section, case: Case) -> None:
             path = format_path(("loci", i, "donor_frequency", donor.name))
             section.number(path, f"Frequency in {donor.name}")
         section.numbers(f"{at}.mutation_to", f"{at}.mutation_from")
-    section.actions(("Add a tracked locus", _new_locus))
+    section.buttons(("Add a tracked locus", _new_locus))
+
+
+def _without(case: Case, name: str) -> Edit:
+    return remove_locus(case, name)
+
+
+def _renamed(case: Case, new: str, name: str) -> Edit:
+    return rename_locus(case, name, new)
 
 
 def _new_locus(case: Case) -> Edit:
@@ -44,7 +54,7 @@ def _new_locus(case: Case) -> Edit:
 def _trait(section: Section, case: Case) -> None:
     trait = case.trait
     if trait is None:
-        section.actions(("Add a trait", _new_trait))
+        section.buttons(("Add a trait", _new_trait))
         return
     section.text("trait.name", "Name of the trait")
     section.numbers(
@@ -54,16 +64,16 @@ def _trait(section: Section, case: Case) -> None:
         "trait.optimum_shift_per_year",
     )
     if trait.optimum_jump is None:
-        section.actions(("Add a jump of the optimum", _new_jump))
+        section.buttons(("Add a jump of the optimum", _new_jump))
     else:
         section.numbers("trait.optimum_jump.year", "trait.optimum_jump.by")
-        section.actions(
+        section.buttons(
             ("Remove the jump", lambda case: set_value(case, "trait.optimum_jump", None))
         )
     section.numbers("trait.mutational_variance", "trait.loci")
     section.text("trait.unit", "Unit, for labels")
     section.numbers("trait.phenotypic_sd", "trait.mean")
-    section.actions(("Remove the trait", lambda case: set_value(case, "trait", None)))
+    section.buttons(("Remove the trait", lambda case: set_value(case, "trait", None)))
 
 
 def _new_trait(case: Case) -> Edit:

@@ -20,7 +20,7 @@ def _life(section: Section, case: Case) -> None:
     if life is None:
         section.line(lambda _: "No life cycle entered: numbers of animals are not projected.")
         section.line(lambda _: "A life cycle added here begins with guesses, marked as such.")
-        section.actions(("Add a life cycle", _new_life))
+        section.buttons(("Add a life cycle", _new_life))
         return
     at = "life_cycle"
     section.numbers(
@@ -45,7 +45,7 @@ def _life(section: Section, case: Case) -> None:
     section.number(f"{at}.mating.unequal_success")
     section.choice(f"{at}.crowding", "Crowding", CROWDING)
     _years(section, case)
-    section.actions(("Remove the life cycle", lambda case: set_value(case, "life_cycle", None)))
+    section.buttons(("Remove the life cycle", lambda case: set_value(case, "life_cycle", None)))
 
 
 def _years(section: Section, case: Case) -> None:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import partial
+
 from rescue_planner.case.document import Case
 from rescue_planner.case.edits import Edit, add_donor, remove_donor, rename_donor
 from rescue_planner.case.paths import format_path
@@ -45,15 +47,23 @@ def _recipient(section: Section, case: Case) -> None:
 def _donors(section: Section, case: Case) -> None:
     for i, donor in enumerate(case.donors):
         name = donor.name
-        section.part(name, lambda case, name=name: remove_donor(case, name))
+        section.part(name, partial(_without, name=name))
         section.text(
             f"donors[{i}].name",
             "Name",
-            make=lambda case, new, name=name: rename_donor(case, name, new),
+            make=partial(_renamed, name=name),
         )
         _donor(section, case, i)
         _screen(section, i)
-    section.actions(("Add a donor", _new_donor))
+    section.buttons(("Add a donor", _new_donor))
+
+
+def _without(case: Case, name: str) -> Edit:
+    return remove_donor(case, name)
+
+
+def _renamed(case: Case, new: str, name: str) -> Edit:
+    return rename_donor(case, name, new)
 
 
 def _donor(section: Section, case: Case, i: int) -> None:

@@ -100,9 +100,9 @@ class Section(QWidget):
 
     # what a section is built from
 
-    def number(self, path: str, label: str | None = None) -> None:
+    def number(self, path: str, label: str | None = None, unit: str | None = None) -> None:
         """Add a number."""
-        self._add(NumberField(self.desk, path, label=label))
+        self._add(NumberField(self.desk, path, label=label, unit=unit))
 
     def numbers(self, *paths: str) -> None:
         """Add several numbers."""
@@ -120,7 +120,7 @@ class Section(QWidget):
         """Add a text."""
         self._add(TextField(self.desk, path, label=label, lines=lines, make=make))
 
-    def choice(self, path: str, label: str, choices: Sequence[tuple[object, str]]) -> None:
+    def choice(self, path: str, label: str, choices: Sequence[tuple[str | None, str]]) -> None:
         """Add a choice; the first entry leaves the field out where its value is None."""
         self._add(ChoiceField(self.desk, path, choices, label=label))
 
@@ -153,7 +153,7 @@ class Section(QWidget):
             row.addWidget(self._edit_button("Remove", remove, said or f"Remove {title}"))
         self._rows.addLayout(row)
 
-    def actions(self, *entries: tuple[str, Callable[[Case], Edit]]) -> None:
+    def buttons(self, *entries: tuple[str, Callable[[Case], Edit]]) -> None:
         """Add buttons that each make one edit."""
         row = QHBoxLayout()
         row.setContentsMargins(0, theme.HALF, 0, 0)

@@ -6,7 +6,9 @@ from collections.abc import Callable
 from datetime import datetime
 
 from PySide6.QtCore import QSignalBlocker, Qt
+from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import (
+    QBoxLayout,
     QCheckBox,
     QComboBox,
     QGridLayout,
@@ -51,6 +53,9 @@ DONOR_QUESTIONS = (
 BODIES = (("small", "small, such as a mouse or a songbird"),
           ("medium", "medium, such as a fox or a goose"),
           ("large", "large, such as a deer or a crane"))  # fmt: skip
+
+
+SIDE_BY_SIDE = 110  # letters of width below which the arithmetic stands below the questions
 
 
 class Question(QWidget):
@@ -136,6 +141,7 @@ class KnownPage(QWidget):
         self.body.setCurrentIndex(1)
         self.body.setAccessibleName("Size of the animal")
         self.body.setMinimumHeight(theme.TARGET)
+        self.body.setMinimumWidth(theme.UNIT * 12)
         self.workings = text("")
         self.workings.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
         self.problem = text("", "problem")
@@ -155,7 +161,7 @@ class KnownPage(QWidget):
     def _lay_out(self) -> None:
         left = QWidget()
         column = QVBoxLayout(left)
-        column.setContentsMargins(*[theme.UNIT * 4] * 3, theme.UNIT * 2)
+        column.setContentsMargins(*[theme.UNIT * 4] * 4)
         column.setSpacing(theme.UNIT * 2)
         column.addWidget(text("A new case from what you know", "title"))
         column.addLayout(self._names())
@@ -171,12 +177,17 @@ class KnownPage(QWidget):
         for key, *_ in DONOR_QUESTIONS:
             column.addWidget(self.questions[key])
         column.addStretch(1)
-        row = QHBoxLayout(self)
-        row.setContentsMargins(0, 0, 0, 0)
-        row.setSpacing(0)
-        row.addWidget(scrolled(left), 5)
-        row.addWidget(rule(upright=True))
-        row.addWidget(scrolled(self._right()), 4)
+        self._box = QBoxLayout(QBoxLayout.Direction.LeftToRight, self)
+        self._box.setContentsMargins(0, 0, 0, 0)
+        self._box.setSpacing(0)
+        self._box.addWidget(scrolled(left), 5)
+        self._box.addWidget(scrolled(self._right()), 4)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        narrow = self.width() < self.fontMetrics().averageCharWidth() * SIDE_BY_SIDE
+        direction = QBoxLayout.Direction
+        self._box.setDirection(direction.TopToBottom if narrow else direction.LeftToRight)
 
     def _right(self) -> QWidget:
         right = QWidget()

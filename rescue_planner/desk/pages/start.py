@@ -94,7 +94,8 @@ class StartPage(QWidget):
         recover = button("Recover", said=f"Recover {left.title}")
         discard = button("Delete this copy", said=f"Delete the copy of {left.title}")
         recover.clicked.connect(lambda: self._files.recover(left))
-        discard.clicked.connect(lambda: (left.discard(), row.hide()))
+        discard.clicked.connect(left.discard)
+        discard.clicked.connect(row.hide)
         line.addWidget(recover)
         line.addWidget(discard)
         return row
