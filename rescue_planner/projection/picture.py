@@ -56,14 +56,13 @@ class Picture:
             return "gone"
         return reading.shown(self.key, float(line.curve.values[t]), self.decimals)
 
-
-    def bands_at(self, t: int) -> str:
-        """Return what the read-out says of the bands at t; empty without bands."""
+    def bands_at(self, t: int) -> tuple[str, ...]:
+        """Return what the read-out says of the two bands at t; nothing without bands."""
         if self.fan is None or t >= self.fan.years.size:
-            return ""
+            return ()
         bounds = (self.fan.q05, self.fan.q25, self.fan.q75, self.fan.q95)
         q = [reading.shown(self.key, float(bound[t]), self.decimals) for bound in bounds]
-        return f"90 in 100: {q[0]} to {q[3]} · 50 in 100: {q[1]} to {q[2]}"
+        return f"90 in 100: {q[0]} to {q[3]}", f"50 in 100: {q[1]} to {q[2]}"
 
 
 def picture(
@@ -138,8 +137,8 @@ def _widest(comparison: Comparison, key: str, decimals: int) -> str:
     for plan in comparison.plans:
         line = reading.curve(comparison, plan, key)
         if line is not None and line.values.size:
-            for value in (line.values.min(), line.values.max()):
-                texts.append(reading.shown(key, float(value), decimals))
+            ends = (float(line.values.min()), float(line.values.max()))
+            texts.extend(reading.shown(key, value, decimals) for value in ends)
     return max(texts, key=len)
 
 

@@ -17,6 +17,7 @@ from rescue_planner.case.filled import (
     steps,
 )
 from rescue_planner.case.plans import Plan, RuleRelease
+from rescue_planner.case.quantity import Quantity
 from rescue_planner.projection.reading import number, year_text
 from rescue_planner.projection.results import FloatArray, read_only
 from rescue_planner.theory import flow
@@ -161,3 +162,45 @@ def donor_frequencies(case: Case) -> tuple[tuple[str, str, float], ...]:
         (locus.name, donor.name, donor_frequency(locus, donor.name))
         for locus, donor in itertools.product(case.loci, case.donors)
     )
+
+
+def limit_sentences(case: Case, plan: Plan) -> tuple[str, ...]:
+    """Return, for each donor that a plan uses, the most it gives in a year and what is allowed."""
+    taken: dict[str, dict[int, float]] = {}
+    for row in event_rows(case, plan):
+        years = taken.setdefault(row.donor, {})
+        years[row.year] = years.get(row.year, 0.0) + row.females + row.males
+    return tuple(
+        _limit(donor.most_removed_per_year, donor.name, taken[donor.name])
+        for donor in case.donors
+        if donor.name in taken
+    )
+
+
+def _limit(most: Quantity | None, donor: str, years: dict[int, float]) -> str:
+    year = max(years, key=lambda one: (years[one], -one))
+    takes = f"at most {tidy(years[year])} in one year (first in {year})"
+    if most is None:
+        return f"This plan takes {takes} from {donor}, whose yearly limit is not stated."
+    return f"This plan takes {takes} from {donor}, which gives up to {float(most.best):g} a year."
+
+
+def flow_words(flow_: Flow) -> str:
+    """Return m and Ne·m as a line."""
+    return (
+        f"m = {number(100 * flow_.m, 1)} % of gene copies a generation, "
+        f"Ne·m = {number(flow_.ne_m, 2)} (Ne {flow_.ne:g})"
+    )
+
+
+def newcomers_words(case: Case, plan: Plan) -> str:
+    """Return the newcomers that breed in the generations of a plan as one sentence."""
+    per_step = newcomers_per_generation(case, plan)
+    at = np.flatnonzero(per_step > 0)
+    if not at.size:
+        return "Newcomers that breed: none planned."
+    low, high = float(per_step[at].min()), float(per_step[at].max())
+    each = tidy(round(low, 2)) if high - low < 0.005 else f"{low:.2f} to {high:.2f}"
+    total = number(float(per_step.sum()), 1)
+    generations = "1 generation" if at.size == 1 else f"{at.size} of {per_step.size} generations"
+    return f"Newcomers that breed: {each} in {generations}, {total} in all, before any rule acts."

@@ -164,7 +164,7 @@ def fan(comparison: Comparison, plan: str, key: str) -> Fan | None:
         found = [comparison.get(plan, depth, key, q) for q in ("q05", "q25", "q50", "q75", "q95")]
         held = [series.values[:count] * times for series in found if series is not None]
         if len(held) == len(found):
-            return Fan(depth, comparison.years[:count], *held)  # type: ignore[arg-type]
+            return Fan(depth, comparison.years[:count], *held)
     return None
 
 

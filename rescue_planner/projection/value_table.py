@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import textwrap
 from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Literal
@@ -56,6 +57,7 @@ def value_table(
     when = [_when(comparison, year, t) for year, t in zip(years, at, strict=True)]
     heads = [f"{title(key)}\n{comparison.unit(key)}" for key in keys]
     names = [f"{reading.letter(comparison, plan)} {plan}" for plan in plans]
+    heads = [wrapped(head) for head in heads]
     if rows_are == "plans":
         header = ("Plan", "Year", *heads)
         rows = tuple(
@@ -64,7 +66,7 @@ def value_table(
             for name, plan in zip(names, plans, strict=True)
         )
         return ValueTable(header, 2, rows, _notes(comparison, years, at))
-    header = ("Measure", "Unit", "Year", *names)
+    header = ("Measure", "Unit", "Year", *(wrapped(name) for name in names))
     rows = tuple(
         (
             title(key),
@@ -91,6 +93,12 @@ def course_table(comparison: Comparison, plans: Sequence[str], key: str) -> Valu
         for t, year in enumerate(comparison.years)
     )
     return ValueTable(header, 2, rows, (f"{title(key)}, {comparison.unit(key)}.",))
+
+
+def wrapped(words: str, width: int = 18) -> str:
+    """Return a heading broken into lines of about `width` letters; its own breaks stay."""
+    lines = [textwrap.wrap(line, width, break_long_words=False) for line in words.split("\n")]
+    return "\n".join(part for line in lines for part in line)
 
 
 def _cell(comparison: Comparison, plan: str, key: str, t: int, digits: int) -> str:

@@ -14,6 +14,7 @@ from rescue_planner.projection.placing import place_labels, tick_texts
 GAP = theme.HALF
 ROOM = 0.03
 SCALE_NAMES = {"years": "year", "generations": "gen."}
+SEPARATOR = " · "
 LETTER_HEIGHT = 0.92  # of a line of text: letters have no descenders
 
 
@@ -69,7 +70,8 @@ class Heading(Gutter):
         super().__init__(parent)
         self.when = ""
         self.t = 0
-        self.lines = 1
+        self.lines = 1  # rows of values
+        self.unit_below = False  # where title and unit do not fit side by side
         self.short = ""
 
     def show_read_out(self, t: int, when: str) -> None:
@@ -80,7 +82,22 @@ class Heading(Gutter):
 
     def resize_to_text(self) -> None:
         height = self.look.line_height
-        self.fix_height(height * 1.15 + self.lines * height + 2 * GAP)
+        self.fix_height(self._top() + self.lines * height + 2 * GAP)
+
+    def _top(self) -> float:
+        return self.look.line_height * (2.15 if self.unit_below else 1.15)
+
+    def _name(self) -> str:
+        assert self.picture is not None
+        return self.picture.title + (f" · {self.short}" if self.short else "")
+
+    def fits(self, width: float) -> bool:
+        """Return whether title and unit fit side by side."""
+        if self.picture is None:
+            return True
+        name = QFontMetricsF(self.look.font(bold=True)).horizontalAdvance(self._name())
+        unit = QFontMetricsF(self.look.font()).horizontalAdvance(self.picture.unit)
+        return name + 2 * GAP + unit <= width
 
     def rows_needed(self, width: float) -> int:
         """Return how many rows the values of all plans take in `width`."""
@@ -88,7 +105,14 @@ class Heading(Gutter):
             return 1
         each, first = self._widths()
         per_row = max(1, int((width - first) / each))
-        return -(-len(self.picture.lines) // per_row) + (1 if self.picture.fan is not None else 0)
+        return -(-len(self.picture.lines) // per_row) + self._band_rows(width)
+
+    def _band_rows(self, width: float) -> int:
+        """Return how many rows the bands take: one where both fit, for any t."""
+        if self.picture is None or self.picture.fan is None:
+            return 0
+        widest = SEPARATOR.join([f"90 in 100: {self.picture.widest} to {self.picture.widest}"] * 2)
+        return 1 if QFontMetricsF(self.look.font()).horizontalAdvance(widest) <= width else 2
 
     def _widths(self) -> tuple[float, float]:
         assert self.picture is not None
@@ -102,7 +126,7 @@ class Heading(Gutter):
             return ()
         values = (f"{x.letter} {self.picture.text_at(x, self.t)}" for x in self.picture.lines)
         bands = self.picture.bands_at(self.t)
-        return (*values, bands) if bands else tuple(values)
+        return (*values, *bands)
 
     def paint(
         self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None = None
@@ -112,21 +136,21 @@ class Heading(Gutter):
         width, height = self.size().width(), self.look.line_height
         ink, soft = QColor(self.look.colours.ink), QColor(self.look.colours.soft)
         bold = self.look.font(bold=True)
-        name = self.picture.title + (f" · {self.short}" if self.short else "")
-        name = QFontMetricsF(bold).elidedText(name, Qt.TextElideMode.ElideRight, width)
+        name = QFontMetricsF(bold).elidedText(self._name(), Qt.TextElideMode.ElideRight, width)
         painter.setFont(bold)
         painter.setPen(ink)
         flags = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
         painter.drawText(QRectF(0, 0, width, height * 1.15), flags, name)
-        left = QFontMetricsF(bold).horizontalAdvance(name) + 2 * GAP
+        left = 0.0 if self.unit_below else QFontMetricsF(bold).horizontalAdvance(name) + 2 * GAP
+        below = height if self.unit_below else 0.0
         painter.setFont(self.look.font())
         painter.setPen(soft)
         unit = QFontMetricsF(self.look.font()).elidedText(
             self.picture.unit, Qt.TextElideMode.ElideRight, max(0.0, width - left)
         )
-        painter.drawText(QRectF(left, 0, width - left, height * 1.15), flags, unit)
+        painter.drawText(QRectF(left, below, width - left, height * 1.15), flags, unit)
         if not self.picture.empty:
-            self._paint_values(painter, height * 1.15 + GAP / 2)
+            self._paint_values(painter, self._top() + GAP / 2)
 
     def _paint_values(self, painter: QPainter, top: float) -> None:
         assert self.picture is not None
@@ -149,8 +173,12 @@ class Heading(Gutter):
             painter.drawText(QRectF(x + shift, y, each, height), flags, text)
         rows = -(-len(self.picture.lines) // per_row)
         painter.setPen(QColor(self.look.colours.soft))
-        box = QRectF(0, top + rows * height, width, height)
-        painter.drawText(box, flags, self.picture.bands_at(self.t))
+        bands = self.picture.bands_at(self.t)
+        if self._band_rows(width) == 1:
+            bands = (SEPARATOR.join(bands),)
+        for i, words in enumerate(bands):
+            box = QRectF(0, top + (rows + i) * height, width, height)
+            painter.drawText(box, flags, words)
 
 
 class ValueTicks(Gutter):
@@ -201,7 +229,6 @@ class EndLetters(Gutter):
         self.setPreferredWidth(width)
         self.setMaximumWidth(width)
 
-
     def places(self) -> list[tuple[int, float, float, int]]:
         """Return (line, height of its end, height of its letter, column) for each letter."""
         if self.picture is None:
@@ -214,8 +241,7 @@ class EndLetters(Gutter):
         room = float(self.size().height())
         found = place_labels([y for _, y in ends], self.look.line_height * LETTER_HEIGHT, 0.0, room)
         return [
-            (i, y, place.position, place.column)
-            for (i, y), place in zip(ends, found, strict=True)
+            (i, y, place.position, place.column) for (i, y), place in zip(ends, found, strict=True)
         ]
 
     def paint(

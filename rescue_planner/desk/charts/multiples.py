@@ -2,9 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-from dataclasses import dataclass
-
 import pyqtgraph as pg
 from PySide6.QtCore import QPointF, QRectF, Qt, QTimer, Signal
 from PySide6.QtGui import (
@@ -20,42 +17,18 @@ from PySide6.QtGui import (
 )
 from PySide6.QtWidgets import QFrame, QMenu, QSizePolicy, QWidget
 
-from rescue_planner.case.document import Case
-from rescue_planner.desk.charts.look import Look
-from rescue_planner.desk.charts.panel import MARGIN, Panel
+from rescue_planner.desk.charts.arrangement import Grid
+from rescue_planner.desk.charts.panel import Panel
+from rescue_planner.desk.charts.shown import PanelSpec, Shown
 from rescue_planner.projection.picture import picture
 from rescue_planner.projection.reading import letter, time_ticks, year_text
-from rescue_planner.projection.results import Comparison
 from rescue_planner.projection.value_table import course_table
 
 FRAME_MS = 16
-LEAST_WIDTH = 292  # of a panel at normal text
-PLOT_HEIGHT = 116
-SPACE_ACROSS, SPACE_DOWN = 20, 12
 EDGE = 0.012  # of the time span, left and right of it, so that markers are whole
 
 
-@dataclass(frozen=True, slots=True)
-class PanelSpec:
-    """Which chart: a measure, and the plan whose bands are drawn in it."""
-
-    key: str
-    fan_of: str | None = None
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Shown:
-    """All that the charts are drawn from."""
-
-    comparison: Comparison
-    case: Case
-    plans: tuple[str, ...]
-    specs: tuple[PanelSpec, ...]
-    strong: str | None = None
-    look: Look = Look()
-
-
-class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgraph has no types
+class SmallMultiples(pg.GraphicsLayoutWidget):
     """Panels in columns. Redraws are gathered into frames; `flush` draws at once."""
 
     read_out_moved = Signal(int)  # t
@@ -71,7 +44,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         self.shown: Shown | None = None
         self.t: int | None = None  # nothing asked: the horizon
         self.current = 0
-        self.columns = 0
+        self._grid = Grid(self.ci)
         self._timer = QTimer(self)
         self._timer.setSingleShot(True)
         self._timer.setInterval(FRAME_MS)
@@ -87,9 +60,6 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
-        self.ci.setContentsMargins(0, 0, 0, 0)
-        self.ci.layout.setHorizontalSpacing(SPACE_ACROSS)
-        self.ci.layout.setVerticalSpacing(SPACE_DOWN)
 
     # what is shown
 
@@ -124,15 +94,13 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         self.setBackground(QColor(wanted.look.colours.paper))
         self._set_count(len(wanted.specs))
         for panel, spec in zip(self.panels, wanted.specs, strict=True):
-            made = picture(
-                wanted.comparison, wanted.case, spec.key, wanted.plans, spec.fan_of
-            )
+            made = picture(wanted.comparison, wanted.case, spec.key, wanted.plans, spec.fan_of)
             panel.heading.short = self._fan_name(spec)
             strong = wanted.strong if spec.fan_of is None else spec.fan_of
             panel.show_picture(made, wanted.look, strong, wanted.comparison.years.size)
-        self._place(force=True)
+        self._place()
         self._show_time()
-        self._show_read_out()
+        self.show_read_out()
         self._describe()
         self.drawn.emit()
 
@@ -150,64 +118,15 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
             panel = Panel()
             self.panels.append(panel)
             self.ci.addItem(panel, row=100 + len(self.panels), col=0)  # placed for good below
-        self.columns = 0
+        self._grid.columns = 0
         self.current = min(self.current, max(0, count - 1))
 
     # where the panels stand
 
-    def _place(self, force: bool = False) -> None:
-        if self.shown is None or not self.panels:
-            return
-        scale = self.shown.look.text_scale
-        columns = max(1, int((self.width() + SPACE_ACROSS) / (LEAST_WIDTH * scale + SPACE_ACROSS)))
-        columns = min(columns, len(self.panels), 4)
-        if columns != self.columns:
-            self._move_to(columns)
-        elif not force:
-            return
-        self._set_heights(columns)
-
-    def _move_to(self, columns: int) -> None:
-        self.columns = columns
-        for panel in self.panels:
-            self.ci.removeItem(panel)
-        for i, panel in enumerate(self.panels):
-            self.ci.addItem(panel, row=i // columns, col=i % columns)
-        for column in range(max(columns, self.ci.layout.columnCount())):
-            used = column < columns
-            self.ci.layout.setColumnStretchFactor(column, 1 if used else 0)
-            self.ci.layout.setColumnPreferredWidth(column, 100.0 if used else 0.0)
-            self.ci.layout.setColumnSpacing(column, SPACE_ACROSS if column < columns - 1 else 0.0)
-
-    def _set_heights(self, columns: int) -> None:
-        assert self.shown is not None
-        rows = -(-len(self.panels) // columns)
-        plot = PLOT_HEIGHT * (1 + 0.4 * (self.shown.look.text_scale - 1))
-        width = (self.width() - SPACE_ACROSS * (columns - 1)) / columns - 2 * MARGIN - 4
-        lines = max(panel.heading.rows_needed(width) for panel in self.panels)
-        left = 0.0
-        for panel in self.panels:
-            panel.heading.lines = lines
-            panel.heading.resize_to_text()
-            panel.fit(plot)
-            left = max(left, panel.values.fixed_width)
-        total = 0.0
-        lowest = len(self.panels) - columns  # panels from here on have none below them
-        for row in range(rows):
-            members = range(row * columns, min((row + 1) * columns, len(self.panels)))
-            scales = 2 if any(i >= lowest for i in members) else 1
-            height = plot
-            for i in members:
-                self.panels[i].time.rows = scales
-                self.panels[i].time.resize_to_text()
-                self.panels[i].values.fix_width(left)
-            first = self.panels[row * columns]
-            height += first.heading.fixed_height + first.time.fixed_height + 2 * MARGIN
-            self.ci.layout.setRowFixedHeight(row, height)
-            total += height
-        for row in range(rows, self.ci.layout.rowCount()):
-            self.ci.layout.setRowFixedHeight(row, 0.0)
-        self.setFixedHeight(round(total + (rows - 1) * SPACE_DOWN + 2))
+    def _place(self) -> None:
+        if self.shown is not None and self.panels:
+            look, width = self.shown.look, self.width()
+            self.setFixedHeight(self._grid.place(self.panels, width, look.text_scale))
 
     def _show_time(self) -> None:
         assert self.shown is not None
@@ -219,10 +138,10 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         for panel in self.panels:
             panel.show_time((first - room, last + room), ticks, panel.time.rows)
 
-    def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802 - Qt's name
+    def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)
         if getattr(self, "shown", None) is not None:
-            self._place(force=True)
+            self._place()
 
     # the read-out
 
@@ -232,7 +151,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
             return
         last = self.shown.comparison.years.size - 1
         self.t = None if t is None else min(max(t, 0), last)
-        self._show_read_out()
+        self.show_read_out()
         self.read_out_moved.emit(last if self.t is None else self.t)
 
     @property
@@ -243,7 +162,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         last = int(self.shown.comparison.years.size) - 1
         return last if self.t is None else min(self.t, last)
 
-    def _show_read_out(self) -> None:
+    def show_read_out(self) -> None:
         if self.shown is None:
             return
         t, comparison = self.read_at, self.shown.comparison
@@ -256,7 +175,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         """Return what the read-out says in each panel, plan by plan."""
         return tuple(panel.heading.texts() for panel in self.panels)
 
-    def mouseMoveEvent(self, event: QMouseEvent) -> None:  # noqa: N802 - Qt's name
+    def mouseMoveEvent(self, event: QMouseEvent) -> None:
         self._read_under(self.mapToScene(event.position().toPoint()))
         super().mouseMoveEvent(event)
 
@@ -270,7 +189,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
                     self.set_read_out(int(nearest))
                 return
 
-    def mousePressEvent(self, event: QMouseEvent) -> None:  # noqa: N802 - Qt's name
+    def mousePressEvent(self, event: QMouseEvent) -> None:
         self.setFocus(Qt.FocusReason.MouseFocusReason)
         at = self.mapToScene(event.position().toPoint())
         for i, panel in enumerate(self.panels):
@@ -278,14 +197,14 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
                 self._choose(i)
         event.accept()
 
-    def leaveEvent(self, event: object) -> None:  # noqa: N802 - Qt's name
+    def leaveEvent(self, event: object) -> None:
         if not self.hasFocus():
             self.set_read_out(None)
         super().leaveEvent(event)
 
     # keyboard
 
-    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802 - Qt's name
+    def keyPressEvent(self, event: QKeyEvent) -> None:
         key, control = event.key(), event.modifiers() & Qt.KeyboardModifier.ControlModifier
         if self.shown is None:
             event.ignore()
@@ -319,15 +238,15 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         self.viewport().update()
         self.panel_chosen.emit(self.shown.specs[i].key)
 
-    def focusInEvent(self, event: QFocusEvent) -> None:  # noqa: N802 - Qt's name
+    def focusInEvent(self, event: QFocusEvent) -> None:
         super().focusInEvent(event)
         self._choose(self.current)
 
-    def focusOutEvent(self, event: QFocusEvent) -> None:  # noqa: N802 - Qt's name
+    def focusOutEvent(self, event: QFocusEvent) -> None:
         super().focusOutEvent(event)
         self.viewport().update()
 
-    def drawForeground(self, painter: QPainter, rect: QRectF) -> None:  # noqa: N802 - Qt's name
+    def drawForeground(self, painter: QPainter, rect: QRectF) -> None:
         """Draw the ring of the chosen panel, or the sentence that stands for charts."""
         if self._message:
             painter.resetTransform()
@@ -355,9 +274,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         year = year_text(float(self.shown.comparison.years[self.read_at]))
         texts = self.panels[self.current].heading.texts()
         now = f"Read at {year}: {', '.join(texts)}." if texts else ""
-        rest = " ".join(
-            self.panel_text(i) for i in range(len(self.panels)) if i != self.current
-        )
+        rest = " ".join(self.panel_text(i) for i in range(len(self.panels)) if i != self.current)
         self.setAccessibleDescription(f"{self.panel_text(self.current)} {now} {rest}".strip())
 
     def table_text(self, i: int) -> str:
@@ -380,7 +297,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         """Put the charts as a picture on the clipboard."""
         QGuiApplication.clipboard().setPixmap(self.grab())
 
-    def contextMenuEvent(self, event: QContextMenuEvent) -> None:  # noqa: N802 - Qt's name
+    def contextMenuEvent(self, event: QContextMenuEvent) -> None:
         if self.shown is None:
             return
         menu = QMenu(self)
@@ -390,14 +307,3 @@ class SmallMultiples(pg.GraphicsLayoutWidget):  # type: ignore[misc]  # pyqtgrap
         menu.addAction("Copy all charts as a picture", self.copy_picture)
         menu.exec(event.globalPos())
         menu.deleteLater()
-
-
-def specs(keys: Sequence[str], fans: Sequence[str] = ()) -> tuple[PanelSpec, ...]:
-    """Return a panel for each measure; a tracked locus gets one with bands for each plan."""
-    found = []
-    for key in keys:
-        if key.startswith("allele_frequency:") and fans:
-            found.extend(PanelSpec(key, plan) for plan in fans)
-        else:
-            found.append(PanelSpec(key))
-    return tuple(found)

@@ -82,8 +82,11 @@ class Overlay(Gutter):
         for words, value in self.picture.references:
             wide, tall = self._size_of(words)
             y, right = self.y_of(value), float(self.size().width()) - wide - GAP
-            self._write(painter, words, [(x, top) for x in (right, right / 2, GAP)
-                                         for top in (y - tall, y + 1)])
+            self._write(
+                painter,
+                words,
+                [(x, top) for x in (right, right / 2, GAP) for top in (y - tall, y + 1)],
+            )
 
     def _size_of(self, words: str) -> tuple[float, float]:
         metrics = QFontMetricsF(self.look.font())

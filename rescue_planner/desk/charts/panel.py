@@ -10,7 +10,6 @@ from PySide6.QtCore import Qt
 from PySide6.QtGui import QColor
 
 from rescue_planner.desk.charts.gutters import (
-    GAP,
     EndLetters,
     Heading,
     TimeTicks,
@@ -104,7 +103,7 @@ class FanItems:
             )
 
 
-class Panel(pg.GraphicsLayout):  # type: ignore[misc]  # pyqtgraph has no types
+class Panel(pg.GraphicsLayout):
     """Heading, value ticks, plot, letters and time ticks of one measure."""
 
     def __init__(self, parent: Any = None) -> None:  # noqa: ANN401 - pyqtgraph's own
@@ -138,9 +137,7 @@ class Panel(pg.GraphicsLayout):  # type: ignore[misc]  # pyqtgraph has no types
             item.setGeometry(0, 0, self.view.width(), self.view.height())
         self.letters.update()
 
-    def show_picture(
-        self, picture: Picture, look: Look, strong: str | None, full: int
-    ) -> None:
+    def show_picture(self, picture: Picture, look: Look, strong: str | None, full: int) -> None:
         """Draw a picture; of the plans, only those that changed.
 
         `full` is the number of values of a line that reaches the horizon.

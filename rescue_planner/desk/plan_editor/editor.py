@@ -1,0 +1,363 @@
+"""The editor of one plan: sentences, grid, and the numbers at hand."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from typing import Any
+
+from PySide6.QtCore import Qt, Signal
+from PySide6.QtWidgets import QHBoxLayout, QLabel, QLayout, QVBoxLayout, QWidget
+
+from rescue_planner.case.document import Case
+from rescue_planner.case.edits import (
+    Edit,
+    add_action,
+    add_release,
+    add_rule,
+    remove_action,
+    remove_release,
+    remove_rule,
+    remove_steady,
+    set_steady,
+)
+from rescue_planner.case.plans import NO_RELEASES, Plan, Release
+from rescue_planner.case.problems import Problem
+from rescue_planner.desk import theme
+from rescue_planner.desk.compare.values import CopyingTable
+from rescue_planner.desk.context import Desk
+from rescue_planner.desk.fields import sentence_of
+from rescue_planner.desk.plan_editor.at_hand import AtHand
+from rescue_planner.desk.plan_editor.blocks import (
+    ActionBlock,
+    ReleaseBlock,
+    RuleBlock,
+    SteadyBlock,
+)
+from rescue_planner.desk.plan_editor.events import EventModel
+from rescue_planner.desk.plan_editor.sentence import Block
+from rescue_planner.desk.widgets import button, rule, text
+from rescue_planner.projection.plan_reading import limit_sentences
+
+NO_DONOR = "No donor is entered yet: add one on the Case page."
+NOTHING_HERE = (
+    "“No releases” is the plan of leaving things as they are. Every other plan is compared with "
+    "it, so it holds nothing and stays."
+)
+DONOR_CAUTION = "Removal limits are set by those responsible for the donor population."
+WELFARE = (
+    "Expected losses shown here are estimates. Handling, transport and release need an "
+    "animal-welfare review and approved protocols."
+)
+
+
+class PlanEditor(QWidget):
+    """Built anew when the plan's parts change; numbers in it follow the case by themselves."""
+
+    built = Signal()  # with new widgets
+
+    def __init__(self, desk: Desk, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._desk = desk
+        self._plan = NO_RELEASES
+        self._built: tuple[Any, ...] | None = None
+        self.blocks: list[ReleaseBlock | SteadyBlock | RuleBlock | ActionBlock] = []
+        self.at_hand: AtHand | None = None
+        self.events = EventModel(desk, self)
+        self.heading = text("", "title")
+        self.refused = text("", "problem")
+        self._outer = QVBoxLayout(self)
+        self._outer.setContentsMargins(0, 0, 0, 0)
+        self._outer.setSpacing(theme.HALF)
+        self._outer.addWidget(self.heading)
+        self._outer.addWidget(self.refused)
+        self._body = QWidget(self)
+        self._outer.addWidget(self._body)
+        self._outer.addStretch(1)
+        self.refused.hide()
+        self.events.refused.connect(self._say)
+        desk.document.changed.connect(self._case_changed)
+        desk.document.replaced.connect(self.refresh)
+        desk.view.changed.connect(self.refresh)
+
+    def show_plan(self, plan: str) -> None:
+        """Edit another plan."""
+        self._plan = plan
+        self._say(())
+        self.refresh()
+
+    def _case_changed(self, _case: object) -> None:
+        self._say(())
+        self.refresh()
+
+    def refresh(self) -> None:
+        """Show the plan as it stands."""
+        document = self._desk.document
+        names = [plan.name for plan in document.case.plans] if document.has_case else []
+        if self._plan not in names:
+            self._clear()
+            return
+        case, index = document.case, names.index(self._plan)
+        self.heading.setText(self._plan)
+        signature = (*_signature(case, index), self._desk.view.text_scale)
+        if signature != self._built:
+            self._build(case, index)
+            self._built = signature
+            self.built.emit()
+        self._refresh_words(case, case.plans[index], index)
+
+    def _clear(self) -> None:
+        self.heading.setText("")
+        if self._built is not None:
+            self._replace_body(QWidget())
+            self.blocks, self.at_hand, self._built = [], None, None
+
+    def _replace_body(self, body: QWidget) -> None:
+        self._outer.replaceWidget(self._body, body)
+        self._body.hide()
+        self._body.deleteLater()
+        self._body = body
+
+    # building
+
+    def _build(self, case: Case, index: int) -> None:
+        plan, body = case.plans[index], QWidget()
+        column = QVBoxLayout(body)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(theme.HALF)
+        self.blocks = []
+        self.at_hand = AtHand(self._desk, case, index)
+        column.addWidget(self.at_hand)
+        if plan.name == NO_RELEASES:
+            column.addWidget(text(NOTHING_HERE))
+        else:
+            self._build_releases(column, case, plan, index)
+            self._build_steady(column, case, plan, index)
+            self._build_rules(column, case, plan, index)
+            self._build_actions(column, case, plan, index)
+        self._replace_body(body)
+
+    def _section(self, column: QVBoxLayout, words: str, *buttons: tuple[str, Any, str]) -> None:
+        """Add a rule, a heading, and buttons as (words, what to do, reason why not)."""
+        column.addWidget(rule())
+        row = QHBoxLayout()
+        row.setSpacing(theme.UNIT)
+        row.addWidget(text(words, "section", wrap=False))
+        row.addStretch(1)
+        for label, do, why_not in buttons:
+            made = button(label, kind="link")
+            made.setEnabled(not why_not)
+            made.setToolTip(why_not)
+            made.setAccessibleDescription(why_not)
+            made.clicked.connect(do)
+            row.addWidget(made)
+        column.addLayout(row)
+
+    def _add_block(self, column: QVBoxLayout, block: Any) -> None:  # noqa: ANN401 - any of four
+        self.blocks.append(block)
+        column.addWidget(block)
+
+    def _build_releases(self, column: QVBoxLayout, case: Case, plan: Plan, index: int) -> None:
+        why_not = "" if case.donors else NO_DONOR
+        self._section(column, "Releases", ("Add release", self._add_release, why_not))
+        if why_not:
+            column.addWidget(text(why_not, "soft"))
+        for i, release in enumerate(plan.releases):
+            block = ReleaseBlock(self._desk, case, index, i)
+            block.duplicate.clicked.connect(_Do(self._duplicate_release, block, release))
+            block.remove.clicked.connect(_Do(self._remove, block, remove_release))
+            self._add_block(column, block)
+        self.limits = text("", "note")
+        column.addWidget(self.limits)
+        if plan.releases:
+            column.addWidget(text(WELFARE, "caution"))
+            self._build_grid(column)
+
+    def _build_grid(self, column: QVBoxLayout) -> None:
+        self.grid = CopyingTable("Every event of the plan’s releases")
+        self.grid.setModel(self.events)
+        self.grid.setEditTriggers(
+            CopyingTable.EditTrigger.DoubleClicked
+            | CopyingTable.EditTrigger.EditKeyPressed
+            | CopyingTable.EditTrigger.AnyKeyPressed
+        )
+        column.addWidget(self.grid)
+        column.addWidget(text("A number changed here changes every event of its release.", "note"))
+
+    def _build_steady(self, column: QVBoxLayout, case: Case, plan: Plan, index: int) -> None:
+        used = {steady.donor for steady in plan.steady}
+        free = [donor.name for donor in case.donors if donor.name not in used]
+        why_not = "" if free else "Each donor has its flow already." if case.donors else NO_DONOR
+        self._section(column, "Steady flow", ("Add steady flow", self._add_steady, why_not))
+        for i in range(len(plan.steady)):
+            block = SteadyBlock(self._desk, case, index, i)
+            block.remove.clicked.connect(_Do(self._remove, block, remove_steady))
+            self._add_block(column, block)
+        if plan.steady:
+            column.addWidget(text("Animals that breed, not animals released.", "caution"))
+
+    def _build_rules(self, column: QVBoxLayout, case: Case, plan: Plan, index: int) -> None:
+        self._section(
+            column,
+            "Rules",
+            ("Add stop rule", self._add_stop, ""),
+            ("Add release rule", self._add_trigger, "" if case.donors else NO_DONOR),
+        )
+        for i, held in enumerate(plan.rules):
+            block = RuleBlock(self._desk, case, index, i, held)
+            block.remove.clicked.connect(_Do(self._remove, block, remove_rule))
+            self._add_block(column, block)
+
+    def _build_actions(self, column: QVBoxLayout, case: Case, plan: Plan, index: int) -> None:
+        self._section(column, "Other actions", ("Add other action", self._add_action, ""))
+        for i in range(len(plan.other_actions)):
+            block = ActionBlock(self._desk, case, index, i)
+            block.remove.clicked.connect(_Do(self._remove, block, remove_action))
+            self._add_block(column, block)
+
+    # words
+
+    def _refresh_words(self, case: Case, plan: Plan, index: int) -> None:
+        for block in self.blocks:
+            block.refresh(case, plan)
+        if self.at_hand is not None:
+            self.at_hand.refresh(case, plan)
+        self.events.show_plan(case, index, plan)
+        if plan.name != NO_RELEASES:
+            said = limit_sentences(case, plan)
+            self.limits.setText(" ".join([*said, DONOR_CAUTION]) if said else "")
+            self.limits.setVisible(bool(said))
+            if plan.releases:
+                self.grid.fit_height()
+
+    def _say(self, problems: object) -> None:
+        held: tuple[Problem, ...] = problems  # type: ignore[assignment]
+        self.refused.setText("⚠ " + sentence_of(held) if held else "")
+        self.refused.setVisible(bool(held))
+
+    # edits
+
+    def _try(self, make: Callable[[Case], Edit], beside: Block | None = None) -> None:
+        problems = self._desk.document.try_edit(make)
+        if beside is not None and problems:
+            beside.sentence.say_problems(problems)
+        else:
+            self._say(problems)
+
+    def _add_release(self) -> None:
+        case, plan = self._desk.document.case, self._plan
+        donor, year = case.donors[0].name, case.time.start_year.best
+        self._try(lambda held: add_release(held, plan, donor, year, 1, 1))
+
+    def _duplicate_release(self, block: ReleaseBlock, release: Release) -> None:
+        plan = self._plan
+        release = self._desk.document.case.plan(plan).releases[block.index]
+        more = {
+            "age": release.who.age,
+            "every_years": release.when.every_years,
+            "times": release.when.times,
+            "survive_to_breed": release.afterwards.survive_to_breed,
+            "breeding_relative_to_residents": release.afterwards.breeding_relative_to_residents,
+            "loan_years": release.loan_years,
+            "each_animal": release.cost.each_animal,
+            "each_event": release.cost.each_event,
+        }
+        who = release.who
+        self._try(
+            lambda case: add_release(
+                case, plan, release.donor, release.when.first_year, who.females, who.males, **more
+            ),
+            block,
+        )
+
+    def _remove(self, block: Any, edit: Any) -> None:  # noqa: ANN401 - any of four
+        plan = self._plan
+        self._try(lambda case: edit(case, plan, block.index), block)
+
+    def _add_steady(self) -> None:
+        case, plan = self._desk.document.case, self._plan
+        used = {steady.donor for steady in case.plan(plan).steady}
+        donor = next(donor.name for donor in case.donors if donor.name not in used)
+        self._try(lambda held: set_steady(held, plan, donor, 1))
+
+    def _free_rule_name(self, wanted: str) -> str:
+        taken = {held.name for held in self._desk.document.case.plan(self._plan).rules}
+        number, name = 1, wanted
+        while name in taken:
+            number += 1
+            name = f"{wanted} {number}"
+        return name
+
+    def _add_stop(self) -> None:
+        plan, name = self._plan, self._free_rule_name("ancestry ceiling")
+        new = {"name": name, "when": "donor_ancestry", "above": 0.3, "then": "stop"}
+        self._try(lambda case: add_rule(case, plan, new))
+
+    def _add_trigger(self) -> None:
+        plan, name = self._plan, self._free_rule_name("another wave")
+        case = self._desk.document.case
+        animals = {"donor": case.donors[0].name, "who": {"females": 1, "males": 1}}
+        new = {
+            "name": name, "when": "inbreeding", "above": 0.25, "then": "release",
+            "release": animals,
+        }  # fmt: skip
+        self._try(lambda held: add_rule(held, plan, new))
+
+    def _add_action(self) -> None:
+        plan, year = self._plan, self._desk.document.case.time.start_year.best
+        new = {"what": "Describe what is done", "year": year}
+        self._try(lambda case: add_action(case, plan, new))
+
+    def reached(self) -> list[QWidget]:
+        """Return what can have the focus, in reading order."""
+        return list(_reached(self._body))
+
+    def words(self) -> list[str]:
+        """Return all labels of the editor, for tests and search."""
+        return [label.text() for label in self.findChildren(QLabel)]
+
+
+class _Do:
+    """A slot that hands on what it was made with, and nothing of the signal."""
+
+    def __init__(self, do: Callable[..., None], *given: object) -> None:
+        self._do, self._given = do, given
+
+    def __call__(self, *_signal: object) -> None:
+        self._do(*self._given)
+
+
+def _reached(widget: QWidget) -> Iterator[QWidget]:
+    """Yield what can have the focus below `widget`, in the order of the layouts."""
+    if widget.focusPolicy() & Qt.FocusPolicy.TabFocus:
+        yield widget
+        return
+    layout = widget.layout()
+    if layout is not None:
+        yield from _in_layout(layout)
+
+
+def _in_layout(layout: QLayout) -> Iterator[QWidget]:
+    for i in range(layout.count()):
+        item = layout.itemAt(i)
+        inner = item.widget() if item is not None else None
+        if inner is not None:
+            yield from _reached(inner)
+        nested = item.layout() if item is not None else None
+        if inner is None and nested is not None:
+            yield from _in_layout(nested)
+
+
+def _signature(case: Case, index: int) -> tuple[Any, ...]:
+    """Return what the editor's parts depend on; numbers are not among it."""
+    plan = case.plans[index]
+    return (
+        index,
+        plan.name,
+        len(plan.releases),
+        tuple(steady.donor for steady in plan.steady),
+        tuple((held.name, held.then) for held in plan.rules),
+        len(plan.other_actions),
+        tuple(donor.name for donor in case.donors),
+        tuple(locus.name for locus in case.loci),
+        case.currency,
+    )
