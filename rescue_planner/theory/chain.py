@@ -3,7 +3,8 @@
 The state is the number of copies of the named allele among n gene copies of the breeding adults
 (n = 2Ne rounded). A state leads to a binomial distribution with n' copies and a chance that
 selection, mutation and flow have set. The whole distribution is carried from step to step; n may
-change every step. Sources: Fisher 1930; Wright 1931; Ewens 2004 chapter 3, from memory.
+change every step. x is the chance that a gene copy of the next generation is the named allele.
+Sources: Fisher 1930; Wright 1931; Ewens 2004 chapter 3, from memory.
 
 How it stays fast and exact: each row of the transition matrix is built outwards from its mode by
 ratios of neighbouring binomial terms, only as far as the tail beyond has less than 1e-18
