@@ -84,6 +84,8 @@ def load(path: str | Path) -> Opened:
 
 def _content(path: Path) -> bytes:
     try:
+        if path.exists() and not path.is_file():  # a folder, a device, a pipe
+            raise CaseFileError(f"“{path.name}” cannot be opened: it is not a file.")
         if path.stat().st_size > MOST_BYTES:
             raise CaseFileError(f"“{path.name}” cannot be opened: it is too large for a case.")
         return path.read_bytes()
@@ -174,7 +176,7 @@ def _members(
 
 def _write(path: Path, content: bytes) -> None:
     target = path.resolve()  # a link keeps pointing to the file
-    beside = target.with_name(f".{target.name[:100]}.{uuid.uuid4().hex[:8]}.part")
+    beside = target.with_name(f".{uuid.uuid4().hex}.part")
     try:
         with beside.open("xb") as new:
             new.write(content)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
+from itertools import chain, islice
 
 from pydantic import ValidationError
 
@@ -25,6 +26,8 @@ from rescue_planner.case.tolerant import Raw
 from rescue_planner.case.wording import worded
 
 __all__ = ["InvalidCase", "Problem", "read_case"]
+
+MOST_LISTED = 1000
 
 _CHECKS: tuple[Callable[[Raw], Iterator[Problem]], ...] = (
     check_names,
@@ -63,15 +66,30 @@ def read_case(raw: object) -> Case:
     if surplus is not None:  # one sentence about the plans; the rest is still checked
         raw = {**raw, "plans": [{"name": NO_RELEASES}], "what_ifs": []}
     case, problems = _typed(raw)
-    problems = [*([surplus] if surplus else ()), *problems]
-    problems += [problem for check in _CHECKS for problem in check(raw)]
-    if case is None or problems:
-        raise InvalidCase(dict.fromkeys(problems))
+    across = (problem for check in _CHECKS for problem in check(raw))
+    found = tuple(_listed(_once(chain([surplus] if surplus else (), problems, across))))
+    if case is None or found:
+        raise InvalidCase(found)
     return case
 
 
-def _typed(raw: Raw) -> tuple[Case | None, list[Problem]]:
+def _typed(raw: Raw) -> tuple[Case | None, Iterator[Problem]]:
     try:
-        return Case.model_validate(raw), []
+        return Case.model_validate(raw), iter(())
     except ValidationError as error:
-        return None, list(worded(error, raw))
+        return None, worded(error, raw)
+
+
+def _once(found: Iterator[Problem]) -> Iterator[Problem]:
+    seen: set[Problem] = set()
+    for problem in found:
+        if problem not in seen:
+            seen.add(problem)
+            yield problem
+
+
+def _listed(found: Iterator[Problem]) -> Iterator[Problem]:
+    """Yield the problems, at most so many as a person could read."""
+    yield from islice(found, MOST_LISTED)
+    if next(found, None) is not None:
+        yield Problem("", f"More than {MOST_LISTED} problems: the rest is not listed.")

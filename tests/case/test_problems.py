@@ -178,6 +178,14 @@ def test_that_nothing_in_a_file_makes_reading_fail_in_another_way(entries):
         assert all(problem.text for problem in invalid.problems)  # noqa: PT017
 
 
+def test_that_a_file_full_of_nonsense_is_refused_at_a_readable_length():
+    raw = small() | {f"field {i}": i for i in range(20_000)}
+    with pytest.raises(InvalidCase) as refused:
+        read_case(raw)
+    assert len(refused.value.problems) == 1001
+    assert refused.value.problems[-1].text == "More than 1000 problems: the rest is not listed."
+
+
 # --- names --------------------
 
 

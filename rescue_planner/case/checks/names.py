@@ -82,8 +82,9 @@ def check_no_releases(raw: Raw) -> Iterator[Problem]:
 def check_references(raw: Raw) -> Iterator[Problem]:
     """Yield every donor that is used but not described, and frequencies not said."""
     donors = names(raw, "donors")
+    known = set(donors)
     for path, name in _donors_used(raw):
-        if name not in donors:
+        if name not in known:
             yield Problem(format_path(path), _unknown(name, donors))
     for place, locus in parts(raw, "loci"):
         said = mapping(locus, "donor_frequency")
