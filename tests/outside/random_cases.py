@@ -20,12 +20,14 @@ HORIZONS = [  # years, years per generation
     (7, 0.7),
     (50, 6.2),
     (3, 4.5),
+    (44, 2.2),  # 33 / 2.2 is a little less than 15 in floats
+    (38, 6.3333333333),  # as written by hand: three steps end a little before 19 years
 ]
 UNTRACKED = ["kinship", "observed_heterozygosity", "persists", "rare_alleles_kept", "young"]
 START = 2027
 
 
-def random_cases(count=55, seed=2027):
+def random_cases(count=65, seed=2027):
     """Return `count` pairs (name, raw case)."""
     return [(f"case {i:02d}", Draw(random.Random(1000 * seed + i), i).case()) for i in range(count)]
 
@@ -55,8 +57,16 @@ class Draw:
         low, high = round(value - half_width, 6), round(value + half_width, 6)
         return {"best": value, "low": low, "high": high, "shape": "triangular", "origin": "guessed"}
 
-    def year(self, last=None):
-        return START + self.rng.randint(0, self.horizon if last is None else last)
+    def years(self, most):
+        """Return a number of whole years, often one at which a step ends."""
+        ends = [t * self.generation for t in range(1, 80) if t * self.generation < most + 0.5]
+        ends = [round(end) for end in ends if abs(end - round(end)) < 1e-6]
+        if ends and self.maybe(0.4):
+            return self.rng.choice(ends)
+        return self.rng.randint(0, most)
+
+    def year(self):
+        return START + self.years(self.horizon)
 
     def case(self):
         case = {
@@ -309,13 +319,13 @@ class Draw:
             if self.maybe():
                 rule["at_most"] = self.rng.randint(1, 4)
         if self.maybe():
-            rule["delay_years"] = self.rng.randint(0, 6)
+            rule["delay_years"] = self.years(self.rng.choice([6, self.horizon]))
         return rule
 
     def action(self):
         action = {"what": "habitat work", "year": self.year()}
         if self.maybe():
-            action["until_year"] = self.rng.randint(action["year"], START + self.horizon)
+            action["until_year"] = max(action["year"], self.year() - self.rng.randint(0, 1))
         if self.maybe(0.6):
             # Ne is at most the adults, and at least 3 here: three such actions leave it above 1
             action["carrying_capacity_times"] = self.rng.choice([0.8, 1.25, 1.1])
@@ -324,6 +334,54 @@ class Draw:
         if self.maybe(0.6):
             action["cost"] = self.entry(40000, 500)
         return action
+
+
+def corner_cases():
+    """Return pairs (name, raw case), each made for one corner that draws seldom meet."""
+    three = {"donor": "D", "who": {"females": 3}}
+    waves = three | {"when": {"first_year": START, "every_years": 3, "times": 5}}
+    rule = {"name": "r", "then": "release", "release": three, "at_most": 2}
+    always = rule | {"when": "inbreeding", "above": 0}
+    plans = {
+        # 33 / 2.2 is a little less than 15: the release belongs to step 15
+        "a delay to the end of a step": {"rules": [always | {"delay_years": 33}]},
+        # strictly above: three animals released don't do it, six do
+        "a value on the bound above": {
+            "releases": [waves],
+            "rules": [rule | {"when": "released", "above": 3}],
+        },
+        "a value on the bound below": {
+            "releases": [waves],
+            "rules": [rule | {"when": "released", "below": 3, "at_most": 9}],
+        },
+        # diverse donors close to the recipient: between them at least their own mean diversity
+        "donors alike": {"releases": [waves, waves | {"donor": "E"}]},
+        "a rule that can fire no more than its release fits in": {
+            "rules": [always | {"delay_years": 44}]
+        },
+    }
+    return [(name, corner_case(plan)) for name, plan in plans.items()]
+
+
+def corner_case(plan):
+    return {
+        "format": "rescue case",
+        "version": 1,
+        "title": "Invented corner",
+        "time": {"start_year": START, "horizon_years": 44, "generation_years": 2.2},
+        "recipient": {
+            "name": "Fen",
+            "adults": 40,
+            "effective_size": 9,
+            "gene_diversity": 0.3,
+            "reference_gene_diversity": 0.7,
+        },
+        "donors": [
+            {"name": "D", "kind": "wild", "gene_diversity": 0.68, "fst_to_recipient": 0.05},
+            {"name": "E", "kind": "wild", "gene_diversity": 0.64, "fst_to_recipient": 0.04},
+        ],
+        "plans": [{"name": "No releases"}, {"name": "Plan"} | plan],
+    }
 
 
 def write_case(case, path):

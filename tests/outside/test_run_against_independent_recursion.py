@@ -18,7 +18,7 @@ from rescue_planner import cli, places
 from rescue_planner.case.problems import read_case
 from rescue_planner.projection.table import projection_csv
 from tests.outside.independent_recursion import number, project, value_at_year
-from tests.outside.random_cases import random_cases, write_case
+from tests.outside.random_cases import corner_cases, random_cases, write_case
 
 # --- is the judge right? ---------------------------------------------------------------------
 
@@ -256,7 +256,7 @@ def test_that_ranges_and_what_is_said_by_default_change_no_value():
 
 # --- is the program right? -------------------------------------------------------------------
 
-CASES = random_cases()
+CASES = random_cases() + corner_cases()
 NAMES = [name for name, _ in CASES]
 # Both sides add up the same terms in different orders: rounding stays under 1e-12 here, measured
 # over 250 cases, and is let grow a little; numbers of animals and shares alike.
@@ -298,7 +298,7 @@ def test_that_the_cases_that_ship_have_the_values_of_the_independent_recursion(p
 
 
 @pytest.mark.slow
-@pytest.mark.parametrize(("name", "raw"), CASES[3:55:13], ids=NAMES[3:55:13])
+@pytest.mark.parametrize(("name", "raw"), CASES[3:55:17], ids=NAMES[3:55:17])
 def test_that_the_files_of_a_run_hold_the_values_of_the_independent_recursion(name, raw, tmp_path):
     path = write_case(raw, tmp_path / "case.json")
     folder = tmp_path / "out"
