@@ -63,7 +63,7 @@ def overview_caption(
     names = listed([DEPTH_NAMES[depth] for depth in depths])
     also = listed([one_line(title(key)) for key in left])
     parts = [
-        f"All plans compared {_where(case)}, {_span(comparison)}: {panels}.",
+        f"The plans for {one_line(case.recipient.name)} compared, {_span(comparison)}: {panels}.",
         f"Depth: {names}. In each panel all plans stand on one scale.",
         "Carets mark targets: pointing up for at least, down for at most.",
         f"Not shown here but in figures of their own: {also}." if left else "",

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+import zipfile
 from collections.abc import Iterable
 from datetime import datetime
 from typing import TYPE_CHECKING, Any
@@ -42,6 +43,19 @@ def docx_bytes(report: Report, began: datetime) -> bytes:
     _Writer(document, report).write()
     out = io.BytesIO()
     document.save(out)
+    return _undated(out)
+
+
+def _undated(packed: io.BytesIO) -> bytes:
+    """Return a packed document with one fixed time on its parts: the same bytes every time."""
+    out = io.BytesIO()
+    with zipfile.ZipFile(packed) as held, zipfile.ZipFile(out, "w") as kept:
+        for part in held.infolist():
+            plain = zipfile.ZipInfo(part.filename, (1980, 1, 1, 0, 0, 0))
+            plain.compress_type = (
+                zipfile.ZIP_STORED if part.filename.endswith(".png") else zipfile.ZIP_DEFLATED
+            )
+            kept.writestr(plain, held.read(part.filename))
     return out.getvalue()
 
 
@@ -97,8 +111,12 @@ def _styles(document: Document) -> None:
             fonts.attrib.pop(qn(f"w:{part}"), None)
     caption: Any = document.styles["Caption"]
     caption.font.bold, caption.font.italic = False, False
-    subtitle: Any = document.styles["Subtitle"]
-    subtitle.font.italic = False
+    for name in ("Title", "Subtitle"):
+        plain: Any = document.styles[name]
+        plain.font.italic = False
+        for part in [*plain.element.iter(qn("w:pBdr")), *plain.element.iter(qn("w:spacing"))]:
+            if part.tag == qn("w:pBdr") or part.getparent().tag == qn("w:rPr"):
+                part.getparent().remove(part)
     for lang in document.styles.element.iter(qn("w:lang")):
         lang.set(qn("w:val"), LANGUAGE)
 

@@ -15,6 +15,8 @@ from rescue_planner.annex.wording import clean
 _TWIPS_PER_MM = 1440 / 25.4
 _LINE = 'w:val="single" w:sz="4" w:space="0" w:color="BFBFBF"'
 _RULE = 'w:val="single" w:sz="8" w:space="0" w:color="1A1A1A"'
+# A table of at most so many rows is not split over two pages.
+_KEPT_WHOLE = 14
 _NAMES = 'xmlns:w="http://schemas.openxmlformats.org/wordprocessingml/2006/main"'
 
 
@@ -46,24 +48,27 @@ def table_xml(table: Table, shares: Sequence[float], width_mm: float) -> Any:  #
 
 def _rows(table: Table, widths: Sequence[int], size: int) -> Iterator[str]:
     head = "".join(
-        _cell(text, width, size, bold=True, right=index in table.numbers)
+        _cell(text, width, size, bold=True, right=index in table.numbers, kept=True)
         for index, (text, width) in enumerate(zip(table.head, widths, strict=True))
     )
     yield f"<w:tr><w:trPr><w:cantSplit/><w:tblHeader/></w:trPr>{head}</w:tr>"
-    for row in table.rows:
+    for place, row in enumerate(table.rows, start=1):
+        kept = len(table.rows) <= _KEPT_WHOLE and place < len(table.rows)
         cells = "".join(
-            _cell(text, width, size, bold=False, right=index in table.numbers)
+            _cell(text, width, size, right=index in table.numbers, kept=kept)
             for index, (text, width) in enumerate(zip(row, widths, strict=True))
         )
         yield f"<w:tr><w:trPr><w:cantSplit/></w:trPr>{cells}</w:tr>"
 
 
-def _cell(text: str, width: int, size: int, *, bold: bool, right: bool) -> str:
+def _cell(text: str, width: int, size: int, *, right: bool, kept: bool, bold: bool = False) -> str:
+    """Return one cell; `kept` holds its row on the page of the next."""
     side = '<w:jc w:val="right"/>' if right else ""
+    together = "<w:keepNext/>" if kept else ""
     heavy = "<w:b/>" if bold else ""
     return (
         f'<w:tc><w:tcPr><w:tcW w:w="{width}" w:type="dxa"/></w:tcPr>'
-        f'<w:p><w:pPr><w:spacing w:before="20" w:after="20"/>{side}</w:pPr>'
+        f'<w:p><w:pPr>{together}<w:spacing w:before="20" w:after="20"/>{side}</w:pPr>'
         f'<w:r><w:rPr>{heavy}<w:sz w:val="{size}"/></w:rPr>'
         f'<w:t xml:space="preserve">{escape(clean(text))}</w:t></w:r></w:p></w:tc>'
     )

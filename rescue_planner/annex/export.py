@@ -50,7 +50,7 @@ class _Folder:
         self.hashes[name] = put(self.folder / name, held)
 
 
-def write_run(
+def write_run(  # noqa: PLR0913 - one call for the desk and the command line
     case: Case,
     comparison: Comparison,
     folder: str | Path,

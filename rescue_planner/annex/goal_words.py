@@ -28,8 +28,8 @@ class _Place:
 def write_goals(frame: Frame, goals: Sequence[Goal], lines: Sequence[Curve]) -> None:
     """Write the words of every target where they cover the fewest lines and no other words."""
     taken: list[Box] = []
+    size = frame.paper.text
     for goal in goals:
-        size = frame.paper.text
         rows = wrapped(goal.words, 0.85 * frame.wide, lambda text: text_width(text, size), 3)
         wide = max(text_width(row, size) for row in rows)
         places = _places(frame, goal, wide, len(rows) * frame.paper.line_height)

@@ -1,8 +1,11 @@
 """Methods, assumptions and limits, written from the settings of the case."""
 
+# ruff: noqa: RUF001 - primes mark the value after a step
+
 from __future__ import annotations
 
 from collections.abc import Iterator
+from itertools import combinations
 
 from rescue_planner.annex.numerals import given, year_text
 from rescue_planner.annex.wording import listed, one_line
@@ -119,11 +122,11 @@ def _drifting(case: Case) -> bool:
 
 
 def _assumed_fst(case: Case) -> str:
-    pairs = []
-    for i, first in enumerate(case.donors):
-        for second in case.donors[i + 1 :]:
-            if second.name not in first.fst_to_donors and first.name not in second.fst_to_donors:
-                pairs.append(f"{one_line(first.name)} and {one_line(second.name)}")
+    pairs = [
+        f"{one_line(first.name)} and {one_line(second.name)}"
+        for first, second in combinations(case.donors, 2)
+        if second.name not in first.fst_to_donors and first.name not in second.fst_to_donors
+    ]
     if not pairs:
         return ""
     return f"the larger of the two means of known diversities, for {listed(pairs)}"

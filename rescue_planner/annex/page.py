@@ -39,11 +39,11 @@ table { border-collapse: collapse; width: 100%; font-size: .875rem; line-height:
   border-bottom: 1.5px solid var(--rule); font-variant-numeric: tabular-nums; }
 caption { text-align: left; padding: .25rem 0 .4rem; caption-side: top; }
 th, td { text-align: left; vertical-align: top; padding: .28rem .5rem;
-  border-top: 1px solid var(--hair); overflow-wrap: anywhere; }
+  border-top: 1px solid var(--hair); overflow-wrap: break-word; }
 thead th { border-top: 1.5px solid var(--rule); border-bottom: 1px solid var(--rule);
-  vertical-align: bottom; overflow-wrap: normal; }
+  vertical-align: bottom; }
 tbody th { font-weight: 500; }
-.number { text-align: right; overflow-wrap: normal; }
+.number { text-align: right; }
 @media print { :root { --paper: #fff; --ink: #000; --quiet: #333; --hair: #bbb; --rule: #000;
   --accent: #000; } @page { size: A4; margin: 18mm; }
   body { max-width: none; padding: 0; font-size: 9.5pt; } nav { display: none; }
@@ -115,7 +115,7 @@ class _Writer:
         for row in table.rows:
             yield f'<tr><th scope="row">{_text(row[0])}</th>'
             for index, words in enumerate(row[1:], start=1):
-                yield f"<td{_side(table, index)}>{_text(words)}</td>"
+                yield f"<td{_side(table, index)}>{_breakable(words)}</td>"
             yield "</tr>\n"
         yield "</tbody>\n</table>\n</div>\n"
 
@@ -132,6 +132,17 @@ def _figure(figure: Illustration) -> str:
         f'alt="{_text(caption.alternative)}">\n'
         f"<figcaption>Figure {figure.number}. {_text(caption.text)}</figcaption>\n</figure>\n"
     )
+
+
+_LONG_WORD = 26
+
+
+def _breakable(words: str) -> str:
+    """Return a cell's text; a long path or hash may be broken at its dots and underlines."""
+    text = _text(words)
+    if max((len(word) for word in words.split()), default=0) <= _LONG_WORD:
+        return text
+    return text.replace(".", ".<wbr>").replace("_", "_<wbr>")
 
 
 def _text(words: str) -> str:

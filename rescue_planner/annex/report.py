@@ -157,8 +157,8 @@ def _compared(content: Content) -> tuple[Section, ...]:
     ]
     capped = (
         [
-            f"First-year survival reached its cap of 1 under {listed(comparison.capped)}: gains are "
-            "understated there."
+            f"First-year survival reached its cap of 1 under {listed(comparison.capped)}: gains "
+            "are understated there."
         ]
         if comparison.capped
         else []

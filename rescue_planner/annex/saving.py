@@ -27,7 +27,8 @@ def svg(figure: Figure, title: str, alternative: str, letters: frozenset[str]) -
     from matplotlib.backends.backend_svg import FigureCanvasSVG
 
     out = io.StringIO()
-    FigureCanvasSVG(figure).print_svg(out, metadata={"Date": None, "Title": title})
+    canvas: Any = FigureCanvasSVG(figure)
+    canvas.print_svg(out, metadata={"Date": None, "Title": title})
     text = re.sub(rf"'{FONT}[^']*'", f"'{FONT}', Verdana, sans-serif", out.getvalue())
     text = re.sub(r"(<svg [^>]*)>", r'\1 role="img">', text, count=1)
     inside = (
@@ -43,7 +44,8 @@ def pdf(figure: Figure, title: str, alternative: str) -> bytes:
 
     out = io.BytesIO()
     told = {"CreationDate": None, "Title": title, "Subject": alternative}
-    FigureCanvasPdf(figure).print_pdf(out, metadata=told)
+    canvas: Any = FigureCanvasPdf(figure)
+    canvas.print_pdf(out, metadata=told)
     return out.getvalue()
 
 
@@ -59,7 +61,7 @@ def pixels(figure: Figure) -> Any:  # noqa: ANN401 - a picture of the Pillow lib
 
     before = figure.get_dpi()
     figure.set_dpi(DPI)
-    canvas = FigureCanvasAgg(figure)
+    canvas: Any = FigureCanvasAgg(figure)
     canvas.draw()
     drawn = Image.fromarray(np.asarray(canvas.buffer_rgba())).convert("RGB")
     figure.set_dpi(before)

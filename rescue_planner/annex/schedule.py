@@ -85,12 +85,7 @@ def _rule(case: Case, rule: Rule) -> str:
         if bound is not None
     ]
     name = _title(rule.when)
-    surveys = (
-        f" in {given(rule.surveys.best)} survey{_plural(rule.surveys)} in a row (one every "
-        f"{given(rule.survey_every_years.best)} year{_plural(rule.survey_every_years)}"
-    )
-    sd = float(rule.survey_sd.best)
-    surveys += f", survey error SD {bound_text(case, rule.when, rule.survey_sd)})" if sd else ")"
+    surveys = _surveys(case, rule)
     delay = float(rule.delay_years.best)
     late = f" {given(delay)} year{_plural(rule.delay_years)} later" if delay else ""
     if rule.then == "stop" or rule.release is None:
@@ -104,6 +99,16 @@ def _rule(case: Case, rule: Rule) -> str:
         f"{one_line(rule.name)}: where {name} is {' and '.join(bounds) or 'anything'}"
         f"{surveys}, {done}."
     )
+
+
+def _surveys(case: Case, rule: Rule) -> str:
+    years = rule.survey_every_years.best
+    every = "yearly" if years == 1 else f"one every {given(years)} years"
+    row = rule.surveys.best
+    found = f" in {given(row)} surveys in a row ({every}" if row != 1 else f" in a survey ({every}"
+    if not rule.survey_sd.best:
+        return f"{found})"
+    return f"{found}, survey error SD {bound_text(case, rule.when, rule.survey_sd)})"
 
 
 def _title(measure: str) -> str:

@@ -7,6 +7,7 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass
 from functools import lru_cache
+from typing import Any
 
 from rescue_planner.annex.face import FONT, cut_family
 
@@ -61,7 +62,7 @@ def printed(letters: frozenset[str] = frozenset()) -> Iterator[None]:
     """
     import matplotlib as mpl
 
-    settings = {
+    settings: Any = {
         "font.family": [cut_family(letters)],
         "svg.fonttype": "none",
         "svg.hashsalt": "rescue planner",
