@@ -41,6 +41,7 @@ class LiveCharts(QWidget):
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.addWidget(self.charts)
+        self._say(COMPUTING)
         self._connect()
 
     def _connect(self) -> None:

@@ -8,6 +8,7 @@ from PySide6.QtGui import (
     QColor,
     QContextMenuEvent,
     QFocusEvent,
+    QFontMetricsF,
     QGuiApplication,
     QKeyEvent,
     QMouseEvent,
@@ -25,6 +26,7 @@ from rescue_planner.projection.reading import letter, time_ticks, year_text
 from rescue_planner.projection.value_table import course_table
 
 FRAME_MS = 16
+PLOT_SHARE = 0.75  # of a panel's width is the plot's, about
 EDGE = 0.012  # of the time span, left and right of it, so that markers are whole
 
 
@@ -133,7 +135,9 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         comparison = self.shown.comparison
         first, last = float(comparison.years[0]), float(comparison.years[-1])
         room = EDGE * (last - first)
-        most = 4 if self.shown.look.text_scale < 1.5 else 2
+        label = QFontMetricsF(self.shown.look.font()).horizontalAdvance(year_text(last))
+        wide = PLOT_SHARE * self.width() / max(1, self._grid.columns)
+        most = max(2, min(4, round(wide / (2 * label))))
         ticks = {axis: time_ticks(comparison, axis, most) for axis in ("years", "generations")}
         for panel in self.panels:
             panel.show_time((first - room, last + room), ticks, panel.time.rows)
@@ -142,6 +146,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         super().resizeEvent(event)
         if getattr(self, "shown", None) is not None:
             self._place()
+            self._show_time()
 
     # the read-out
 
