@@ -28,6 +28,7 @@ from rescue_planner.case.quantity import Quantity
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.numbers import range_in_words, read_number, stepped, value_at, written
+from rescue_planner.desk.widgets import Link
 
 if TYPE_CHECKING:
     from rescue_planner.case.document import Case
@@ -187,7 +188,7 @@ class _Bound(QWidget):
         bounds = f" Bounds: {self.definition.bounds}." if self.definition.bounds else ""
         return f"{self.definition.meaning}{bounds}"
 
-    def _commit(self, value: float | str | bool | None) -> bool:
+    def _commit(self, value: float | str | bool | Quantity | None) -> bool:
         from rescue_planner.case.edits import set_value
 
         problems = self.desk.document.try_edit(lambda case: set_value(case, self.path, value))
@@ -195,9 +196,13 @@ class _Bound(QWidget):
         return not problems
 
     def _show_problems(self, problems: tuple[Problem, ...]) -> None:
+        self._forget_offer()
         self.problem.setText("⚠ " + sentence_of(problems) if problems else "")
         self.problem.setVisible(bool(problems))
         self.desk.problems_shown.put(self.path, problems)
+
+    def _forget_offer(self) -> None:
+        """Take away what was offered with an earlier sentence."""
 
     def _say_wrong(self, text: str) -> None:
         self._show_problems((Problem(self.path, text),))
@@ -233,6 +238,9 @@ class NumberField(_Bound):
         self.unit.setObjectName("unit")
         self.note = QLabel()
         self.note.setObjectName("note")
+        self.widen = Link("Widen the range to it")
+        self.widen.hide()
+        self._wanted: float | int | None = None
         self._describe(self.edit, self.label)
         self._lay_out()
         self._connect()
@@ -245,6 +253,7 @@ class NumberField(_Bound):
         if self.compact:
             outer.addWidget(self.edit)
             outer.addWidget(self.problem)
+            outer.addWidget(self.widen)
             self.setSizePolicy(QSizePolicy.Policy.Maximum, QSizePolicy.Policy.Maximum)
             for unused in (self.label, self.unit, self.note):
                 unused.setParent(None)
@@ -262,6 +271,7 @@ class NumberField(_Bound):
         row.addWidget(self.note, 2)
         outer.addWidget(FieldRow(self.label, content))
         outer.addWidget(self.problem)
+        outer.addWidget(self.widen)
 
     def _connect(self) -> None:
         self.edit.entered.connect(self.commit)
@@ -269,6 +279,7 @@ class NumberField(_Bound):
         self.edit.reverted.connect(self.revert)
         self.edit.focused.connect(self._focused)
         self.edit.textChanged.connect(self._fit)
+        self.widen.clicked.connect(self._widen)
 
     def _focused(self) -> None:
         self.desk.explain.show(self.path)
@@ -333,7 +344,37 @@ class NumberField(_Bound):
             return
         self._accept(typed)
 
-    def _accept(self, typed: float | int | None) -> None:
+    def _outside(self, typed: float | int | None) -> bool:
+        """Say so where a number lies outside the range that is held with it, and offer a way."""
+        held = self.held()
+        spread = held.spread if isinstance(held, Quantity) else None
+        if typed is None or spread is None or spread[0] <= typed <= spread[1]:
+            return False
+        self._wanted = typed
+        self._say_wrong(
+            f"{written(typed)} is outside the range {range_in_words(held)} held with this value. "
+            "Change the range at the right, or widen it."
+        )
+        self.widen.setAccessibleName(f"Widen the range of {self.name} to {written(typed)}")
+        self.widen.show()
+        return True
+
+    def _forget_offer(self) -> None:
+        self.widen.hide()
+
+    def _widen(self) -> None:
+        held = self.held()
+        if not isinstance(held, Quantity) or self._wanted is None or held.spread is None:
+            return
+        ends = (*held.spread, self._wanted)
+        changed = {"best": self._wanted, "low": min(ends), "high": max(ends)}
+        whole = Quantity(**{**held.model_dump(exclude_none=True), **changed})
+        self._accept(whole)
+
+    def _accept(self, typed: float | int | Quantity | None) -> None:
+        if not isinstance(typed, Quantity) and self._outside(typed):
+            self.edit.setModified(True)
+            return
         self.edit.setModified(False)  # so that the case's own form of the number is shown
         self.problem.setVisible(False)
         text = self.edit.text()
@@ -354,7 +395,9 @@ class NumberField(_Bound):
         self.commit()
         held = self.held()
         if isinstance(held, Quantity) and not self.has_problem:
-            self._accept(stepped(held.best, by, self.definition))
+            moved = stepped(held.best, by, self.definition)
+            self._put(written(moved))
+            self._accept(moved)
             self.edit.selectAll()
 
 

@@ -181,7 +181,9 @@ class KnownPage(QWidget):
         self._box.setContentsMargins(0, 0, 0, 0)
         self._box.setSpacing(0)
         self._box.addWidget(scrolled(left), 5)
-        self._box.addWidget(scrolled(self._right()), 4)
+        aside = scrolled(self._right())
+        aside.setObjectName("aside")
+        self._box.addWidget(aside, 4)
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)
