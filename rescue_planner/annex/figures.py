@@ -113,9 +113,9 @@ def _names(frame: Frame, comparison: Comparison, lines: Sequence[Curve]) -> list
     found = []
     for line in lines:
         words = plan_label(comparison, line.plan)
-        if line.gone is not None:
-            words += f" (gone by {year_text(line.gone)})"
-        found.append(wrapped(words, room, lambda t: text_width(t, paper.text), max(most, 1)))
+        ends = line.gone is not None and most > 1  # in one row the cross and the caption say it
+        rows = wrapped(words, room, lambda t: text_width(t, paper.text), max(most - ends, 1))
+        found.append((*rows, f"gone by {year_text(line.gone)}") if line.gone and ends else rows)
     return found
 
 

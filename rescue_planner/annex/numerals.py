@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 
-from rescue_planner.case.measures import measure_of, unit
+from rescue_planner.case.measures import measure_of
 from rescue_planner.projection.table import shortest
 
 THIN = "\u202f"
@@ -64,11 +64,6 @@ def value_text(key: str, value: float) -> str:
     if math.isnan(value):
         return NOTHING
     return decimal(value * scale_of(key), decimals_of(key, value))
-
-
-def with_unit(key: str, value: float, currency: str | None = None) -> str:
-    """Return a value with its unit, such as `91.3 % of today’s`."""
-    return f"{value_text(key, value)} {unit(key, currency)}"
 
 
 def given(value: float) -> str:

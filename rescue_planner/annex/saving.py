@@ -49,11 +49,6 @@ def pdf(figure: Figure, title: str, alternative: str) -> bytes:
     return out.getvalue()
 
 
-def png(figure: Figure, title: str, alternative: str) -> bytes:
-    """Return a figure as PNG at 300 dots per inch."""
-    return pressed(pixels(figure), title, alternative)
-
-
 def pixels(figure: Figure) -> Any:  # noqa: ANN401 - a picture of the Pillow library
     """Return a figure drawn at 300 dots per inch, not yet pressed into a file."""
     from matplotlib.backends.backend_agg import FigureCanvasAgg

@@ -62,6 +62,8 @@ def values_scale(
     values = np.concatenate([*held, [goal.bound for goal in goals]])
     values = values[np.isfinite(values)]
     low, high = (float(values.min()), float(values.max())) if values.size else (0.0, 1.0)
+    if low == high == 0.0:  # nothing ever: an axis from 0 up, whatever the unit
+        return Scale(0.0, 1.05, (0.0, 1.0), ("0", "1"))
     share = measure_of(measure).kind == "share"
     if low >= 0 and low < 0.4 * high:
         low = 0.0

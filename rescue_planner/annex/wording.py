@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Sequence
 
-from rescue_planner.case.measures import measure_of, split, title, unit
+from rescue_planner.case.measures import measure_of, split, title
 from rescue_planner.projection.marks import mark
 from rescue_planner.projection.results import Comparison
 
@@ -21,11 +21,6 @@ def clean(text: str) -> str:
 def one_line(text: str) -> str:
     """Return `text` on one line, runs of white space as one space."""
     return " ".join(clean(text).split())
-
-
-def shortened(text: str, most: int) -> str:
-    """Return `text` cut to at most `most` characters, with an ellipsis where it was cut."""
-    return text if len(text) <= most else text[: most - 1].rstrip() + "…"
 
 
 def neutral(text: str) -> str:
@@ -50,11 +45,6 @@ def plan_label(comparison: Comparison, plan: str) -> str:
 def axis_title(comparison: Comparison, key: str) -> str:
     """Return the name of a measure with its unit."""
     return f"{one_line(title(key))} ({comparison.unit(key)})"
-
-
-def unit_in(key: str, currency: str | None) -> str:
-    """Return the unit of a measure; a dash where it has none."""
-    return unit(key, currency) or "–"
 
 
 def stems(measures: Sequence[str]) -> dict[str, str]:
