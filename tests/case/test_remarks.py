@@ -317,7 +317,7 @@ def test_that_every_part_that_only_simulated_animals_use_is_named():
     assert set(said(raw, "simulated-only")) == {
         "load", "mixing_cost", "genome", "inbreeding_cost.how", "life_cycle.die_offs",
         "life_cycle.yearly_sd", "life_cycle.crowding", "life_cycle.mating",
-        "donors[0].life_cycle", "donors[1].kinship_among_released",
+        "donors[0].lethal_equivalents_diploid", "donors[1].kinship_among_released",
         "plans[2].releases[0].loan_years", "plans[2].rules[1]",
     }  # fmt: skip
     assert said(small(), "simulated-only") == {}

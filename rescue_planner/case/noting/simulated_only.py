@@ -55,8 +55,9 @@ def _life(life: LifeCycle) -> Found:
 
 
 def _donor(donor: Donor, path: str) -> Found:
-    if donor.life_cycle is not None:
-        yield f"{path}.life_cycle", f"The life cycle of {donor.name}"
+    if donor.lethal_equivalents_diploid is not None:
+        where = f"{path}.lethal_equivalents_diploid"
+        yield where, f"The inbreeding cost of {donor.name} itself"
     if donor.kinship_among_released is not None:
         yield f"{path}.kinship_among_released", f"Kinship among animals from {donor.name}"
 
