@@ -109,7 +109,7 @@ def _names(frame: Frame, comparison: Comparison, lines: Sequence[Curve]) -> list
     paper = frame.paper
     high = paper.height - 3.0
     most = min(3, int(high / (paper.line_height + 0.3) / max(len(lines), 1)))
-    room = paper.right - _NAME_MM - 1.0
+    room = paper.right - _NAME_MM - 1.5
     found = []
     for line in lines:
         words = plan_label(comparison, line.plan)

@@ -60,7 +60,7 @@ def decimals_of(key: str, value: float = math.inf) -> int:
 
 
 def value_text(key: str, value: float) -> str:
-    """Return the value of a measure as print shows it, in `unit_text` units."""
+    """Return the value of a measure as print shows it, in the unit of its measure."""
     if math.isnan(value):
         return NOTHING
     return decimal(value * scale_of(key), decimals_of(key, value))

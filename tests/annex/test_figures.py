@@ -1,17 +1,21 @@
 from __future__ import annotations
 
 import re
-from itertools import combinations
+from itertools import combinations, pairwise
 from xml.etree import ElementTree
 
 import pytest
+from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.lines import Line2D
 from PIL import Image
 from pypdf import PdfReader
 
 from rescue_planner.annex.figures import draw_measure
+from rescue_planner.annex.overview import draw_overview, overview_measures
 from rescue_planner.annex.panel import MARKERS, dash
 from rescue_planner.annex.sheet import MM_PER_INCH, printed
+from rescue_planner.case.document import Case
+from rescue_planner.projection.compare import compare
 from rescue_planner.projection.marks import mark
 
 STEMS = ("comparison", "gene_diversity_kept", "allele_frequency_winter-coat", "cost")
@@ -73,8 +77,6 @@ def test_that_no_text_is_under_seven_points_and_no_line_under_half_a_point(case,
 
 
 def test_that_the_overview_keeps_to_the_same_limits(case, comparison):
-    from rescue_planner.annex.overview import draw_overview, overview_measures
-
     shown = overview_measures(comparison, comparison.measures)
     with printed():
         for width in (85, 170):
@@ -83,22 +85,46 @@ def test_that_the_overview_keeps_to_the_same_limits(case, comparison):
             assert min(line.get_linewidth() for line in figure.findobj(Line2D)) >= 0.5
 
 
+def _assert_inside(figure) -> None:
+    canvas = FigureCanvasAgg(figure)
+    canvas.draw()
+    wide, high = canvas.get_width_height()
+    for text in figure.texts:
+        box = text.get_window_extent(canvas.get_renderer())
+        assert box.x0 >= 0, text
+        assert box.y0 >= 0, text
+        assert box.x1 <= wide, text
+        assert box.y1 <= high, text
+
+
 @pytest.mark.parametrize("width", [85, 170])
 def test_that_no_word_is_cut_off_by_the_edge_of_the_sheet(case, comparison, width):
-    from matplotlib.backends.backend_agg import FigureCanvasAgg
-
     with printed():
         for measure in comparison.measures:
-            figure = draw_measure(case, comparison, measure, width)
-            canvas = FigureCanvasAgg(figure)
-            canvas.draw()
-            wide, high = canvas.get_width_height()
-            for text in figure.texts:
-                box = text.get_window_extent(canvas.get_renderer())
-                assert box.x0 >= 0, text
-                assert box.y0 >= 0, text
-                assert box.x1 <= wide, text
-                assert box.y1 <= high, text
+            _assert_inside(draw_measure(case, comparison, measure, width))
+        shown = overview_measures(comparison, comparison.measures)
+        _assert_inside(draw_overview(case, comparison, shown, width))
+
+
+@pytest.mark.parametrize("width", [85, 170])
+def test_that_twelve_plans_with_long_names_still_have_labels_apart(sample, width):
+    raw = sample.raw()
+    for number in range(7):
+        plan = {**raw["plans"][2], "name": f"A plan with a rather long name, number {number}"}
+        raw["plans"].append(plan)
+    case = Case.model_validate(raw)
+    comparison = compare(case)
+    with printed():
+        figure = draw_measure(case, comparison, "gene_diversity_kept", width)
+        _assert_inside(figure)
+        canvas = FigureCanvasAgg(figure)
+        names = [text for text in figure.texts if re.match(r"[A-L] ", text.get_text())]
+        assert len(names) == 12
+        boxes = sorted(
+            (text.get_window_extent(canvas.get_renderer()) for text in names), key=lambda b: b.y0
+        )
+        # boxes hold the room below the baseline too, so that they may touch by a hair
+        assert all(low.y1 <= high.y0 + 1.0 for low, high in pairwise(boxes))
 
 
 def test_that_both_time_axes_are_labelled(written):
