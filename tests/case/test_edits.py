@@ -107,6 +107,17 @@ def test_that_what_ifs_and_answers_follow_when_an_earlier_plan_goes():
     assert left.answers[0].remark == "release-of-none plans[1].releases[0].who"
 
 
+def test_that_what_ifs_and_answers_follow_when_a_plan_comes_in_before():
+    more = edits.duplicate_plan(with_numbered_what_if(), "Trickle").case
+    assert more.what_ifs[0].changes[0].path == "plans[3].releases[0].who.females"
+    assert more.answers[0].remark == "release-of-none plans[3].releases[0].who"
+
+
+def test_that_what_ifs_stay_when_a_plan_comes_in_after():
+    more = edits.duplicate_plan(with_numbered_what_if(), "Two pairs every fourth year").case
+    assert more.what_ifs[0].changes[0].path == "plans[2].releases[0].who.females"
+
+
 def test_that_a_plan_a_what_if_names_stays_until_that_is_changed():
     with pytest.raises(InvalidCase, match=r"The what-if “half survive” changes plans\[2\]"):
         edits.remove_plan(with_numbered_what_if(), "Two pairs every fourth year")

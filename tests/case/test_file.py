@@ -238,7 +238,7 @@ def test_that_a_member_that_is_no_part_of_a_case_is_refused_by_name(tmp_path, na
 
 
 def test_that_a_name_with_a_zero_byte_is_refused(tmp_path):
-    whole = zipped(**{"tables/aXb.csv": b"1"}).replace(b"aXb.csv", b"a\0b.csv")
+    whole = zipped(**{"tables/a.csvXb.csv": b"1"}).replace(b"csvXb", b"csv\0b")
     assert "no part of a rescue case" in refusal(tmp_path, whole)
 
 
