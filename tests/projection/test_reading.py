@@ -135,7 +135,7 @@ def test_that_axes_only_differ_in_labels(comparison):
     generations = reading.time_ticks(comparison, "generations", 4)
     assert years[0] == (2027.0, "2027")
     assert generations[0] == (2027.0, "0")
-    assert dict((text, at) for at, text in generations)["10"] == 2027 + 10 * 4
+    assert {text: at for at, text in generations}["10"] == 2027 + 10 * 4
 
 
 def test_that_fifty_years_at_four_a_generation_are_twelve_and_a_half_generations():

@@ -16,7 +16,7 @@ from PySide6.QtGui import (
     QPen,
     QResizeEvent,
 )
-from PySide6.QtWidgets import QFrame, QMenu, QSizePolicy, QWidget
+from PySide6.QtWidgets import QFrame, QGraphicsView, QMenu, QSizePolicy, QWidget
 
 from rescue_planner.desk.charts.arrangement import Grid
 from rescue_planner.desk.charts.panel import Panel
@@ -46,7 +46,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         self.shown: Shown | None = None
         self.t: int | None = None  # nothing asked: the horizon
         self.current = 0
-        self._grid = Grid(self.ci)
+        self.grid = Grid(self.ci)
         self._timer = QTimer(self)
         self._timer.setSingleShot(True)
         self._timer.setInterval(FRAME_MS)
@@ -62,6 +62,10 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
+
+    def close(self) -> bool:
+        """Close like any widget; pyqtgraph's own way takes the scene apart under its items."""
+        return bool(QGraphicsView.close(self))
 
     # what is shown
 
@@ -120,7 +124,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
             panel = Panel()
             self.panels.append(panel)
             self.ci.addItem(panel, row=100 + len(self.panels), col=0)  # placed for good below
-        self._grid.columns = 0
+        self.grid.columns = 0
         self.current = min(self.current, max(0, count - 1))
 
     # where the panels stand
@@ -128,7 +132,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
     def _place(self) -> None:
         if self.shown is not None and self.panels:
             look, width = self.shown.look, self.width()
-            self.setFixedHeight(self._grid.place(self.panels, width, look.text_scale))
+            self.setFixedHeight(self.grid.place(self.panels, width, look.text_scale))
 
     def _show_time(self) -> None:
         assert self.shown is not None
@@ -136,7 +140,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         first, last = float(comparison.years[0]), float(comparison.years[-1])
         room = EDGE * (last - first)
         label = QFontMetricsF(self.shown.look.font()).horizontalAdvance(year_text(last))
-        wide = PLOT_SHARE * self.width() / max(1, self._grid.columns)
+        wide = PLOT_SHARE * self.width() / max(1, self.grid.columns)
         most = max(2, min(4, round(wide / (2 * label))))
         ticks = {axis: time_ticks(comparison, axis, most) for axis in ("years", "generations")}
         for panel in self.panels:

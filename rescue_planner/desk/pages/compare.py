@@ -37,6 +37,7 @@ class ComparePage(QWidget):
     def __init__(self, desk: Desk, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._desk = desk
+        self._stale = True
         self.chooser = MeasureChooser(self)
         self.averages = LiveCharts(desk, "Charts of the average course", self._average_specs)
         self.odds = LiveCharts(desk, "Charts of tracked loci", self._locus_specs)
@@ -105,6 +106,7 @@ class ComparePage(QWidget):
         self._desk.document.changed.connect(self._case_changed)
         self._desk.live.updated.connect(self._updated)
         self._desk.view.changed.connect(self.refresh)
+        self.averages.refreshed.connect(self._late)
 
     def _average_specs(
         self, case: Case, comparison: Comparison, plans: tuple[str, ...]
@@ -132,7 +134,13 @@ class ComparePage(QWidget):
         self.refresh()
 
     def _case_changed(self, _case: object) -> None:
-        self.refresh()
+        self.refresh()  # numbers wait for the new comparison, which is there within a frame
+
+    def _late(self) -> None:
+        """Take away what was drawn from an older case; the charts have done so."""
+        if self._desk.live.comparison is None:
+            self._stale = True
+            self.refresh()
 
     def _updated(self, _comparison: object) -> None:
         self.refresh()
@@ -152,10 +160,11 @@ class ComparePage(QWidget):
         self.export_button.setEnabled(comparison is not None)
         self.measures_button.setEnabled(comparison is not None)
         if not document.has_case or comparison is None:
-            if not document.has_case or not self.isVisible():
+            if not document.has_case or self._stale:
                 self.values.show_values(None, (), ())
                 self._show_rest(None, None)
             return
+        self._stale = False
         self.chooser.offer(document.case, comparison)
         self._show_rest(document.case, comparison)
         shown = self.chooser.shown_keys()

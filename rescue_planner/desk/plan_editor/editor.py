@@ -116,6 +116,7 @@ class PlanEditor(QWidget):
         self._body.hide()
         self._body.deleteLater()
         self._body = body
+        body.show()
 
     # building
 

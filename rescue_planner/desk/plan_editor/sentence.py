@@ -116,7 +116,8 @@ class Sentence(QWidget):
         self._flow.addWidget(field)
         layout = self.layout()
         assert layout is not None
-        layout.addWidget(field.problem)  # below the sentence, where there is room for it
+        for below in (field.problem, field.widen):  # below the sentence, where there is room
+            layout.addWidget(below)
         return self
 
     def choice(self, path: str, choices: Sequence[tuple[str, str]], name: str) -> Sentence:
