@@ -86,6 +86,7 @@ def test_that_the_overview_keeps_to_the_same_limits(case, comparison):
 
 
 def _assert_inside(figure) -> None:
+    figure.set_dpi(300)  # as the PNG is drawn; hinting at fewer dots widens letters
     canvas = FigureCanvasAgg(figure)
     canvas.draw()
     wide, high = canvas.get_width_height()
