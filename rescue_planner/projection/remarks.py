@@ -9,9 +9,11 @@ from numpy.typing import NDArray
 
 from rescue_planner.case.document import Case
 from rescue_planner.case.remarks import Remark, remarks
+from rescue_planner.projection.chain_path import LARGEST_COPIES
 from rescue_planner.projection.compare import plan_course
 from rescue_planner.projection.donor_take import donor_remarks
 from rescue_planner.projection.expected import Course
+from rescue_planner.theory.chain import copies
 
 FloatArray = NDArray[np.float64]
 _SLACK = 1e-9
@@ -36,6 +38,14 @@ def _on_course(case: Case, path: str, course: Course) -> Iterator[Remark]:
     yield from _possible(course, path)
     yield from _numbers(case, course, path)
     name = course.setup.plan
+    most = max((step.ne[0] for step in course.steps), default=0.0)
+    if case.loci and copies(float(most)) > LARGEST_COPIES:
+        yield Remark(
+            "chain-too-large",
+            path,
+            f"Under {name}, 2Ne passes {LARGEST_COPIES:,}: the one-locus odds are not computed. "
+            "At that size drift hardly matters; read the average course.",
+        )
     for rule in course.book.not_applied:
         yield Remark(
             "rule-not-applied",
