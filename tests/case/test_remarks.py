@@ -139,6 +139,13 @@ def test_that_an_assumed_fst_of_two_donors_is_said_with_its_value():
     assert said(raw, "fst-assumed") == {}
 
 
+def test_that_assumed_donors_differ_at_least_as_much_as_animals_within_them():
+    """At FST 0 both H_rd are 0.54, below the donors' own 0.66, so H_de is 0.66 and FST 0."""
+    raw = changed(with_release(), "donors[0].fst_to_recipient", 0)
+    raw["donors"].append({"name": "Near", "gene_diversity": 0.66, "fst_to_recipient": 0})
+    assert "taken as 0.000" in said(raw, "fst-assumed")["donors[1].fst_to_donors.Upper Fen"]
+
+
 # --- life cycle ---------------------------------------------------------------------
 
 
