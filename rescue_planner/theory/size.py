@@ -134,6 +134,15 @@ def size_to_keep(share: Numbers, generations: Numbers) -> FloatArray:
     return -0.5 / np.expm1(np.log(floats(share)) / floats(generations))
 
 
+def size_to_keep_for_years(share: Numbers, years: Numbers, generation_years: Numbers) -> FloatArray:
+    """Return the Ne that keeps `share` of gene diversity for so many years; (...), animals.
+
+    `size_to_keep` for years / generation_years generations: a rule in years asks less of an animal
+    that lives long. `share` between 0 and 1, both excluded.
+    """
+    return size_to_keep(share, floats(years) / floats(generation_years))
+
+
 def yearly_loss(ne: Numbers, generation_years: Numbers) -> FloatArray:
     """Return the share of gene diversity lost per year: 1 - (1 - 1/(2 Ne))^(1/T).
 
