@@ -1,0 +1,145 @@
+"""Load at the balance of mutation, selection and drift.
+
+Harmful allele with fitness 1, 1 - h s, 1 - s; u is the mutation rate to it, v back, per gene copy
+and generation. These are states of populations long constant: never the state after a recent
+bottleneck (`load.load_after_bottleneck`). Sources: Haldane 1937; Wright 1937; Crow & Kimura 1970,
+from memory; the stationary state was checked against the exact chain.
+"""
+
+from typing import NamedTuple
+
+import numpy as np
+from scipy.special import roots_jacobi
+
+from rescue_planner.theory.arrays import FloatArray, Numbers, floats
+
+_NODES = 400
+
+
+class StationaryLoad(NamedTuple):
+    """Long-run state of one locus: mean frequency, realised and masked load, each (...)."""
+
+    frequency: FloatArray
+    realised: FloatArray
+    masked: FloatArray
+
+
+def equilibrium_frequency(u: Numbers, s: Numbers, h: Numbers) -> FloatArray:
+    """Return the exact frequency at mutation-selection balance in a very large population.
+
+    Positive root of s (1-2h) q^2 + h s (1+u) q - u = 0: selection, then mutation, none back.
+    About u/(h s) for h s well above sqrt(u s), about sqrt(u/s) for a recessive.
+
+    Parameters
+    ----------
+    u, s, h : (...) array
+        Mutation rate, selection against the homozygote (above 0), dominance (0 to 1).
+
+    Returns
+    -------
+    (...) array
+        0 to 1; 1 where mutation is stronger than selection.
+    """
+    u_, s_, h_ = floats(u), floats(s), floats(h)
+    slope = h_ * s_ * (1.0 + u_)
+    inside = np.maximum(0.0, slope**2 + 4.0 * s_ * (1.0 - 2.0 * h_) * u_)
+    bottom = slope + np.sqrt(inside)
+    q = 2.0 * u_ / np.where(bottom == 0.0, 1.0, bottom)
+    return np.where(u_ >= s_, 1.0, np.minimum(1.0, q))[()]
+
+
+def load_from_mutation(genomic_rate: Numbers, h: Numbers) -> FloatArray:
+    """Return haploid B = U (1/(2h) - 1) of a large population at balance, one common dominance.
+
+    Parameters
+    ----------
+    genomic_rate : (...) array
+        U, new harmful mutations per *diploid* genome and generation.
+    h : (...) array
+        Dominance, well above sqrt(u/s) (for recessives the form fails).
+
+    Returns
+    -------
+    (...) array
+        Per *haploid* genome. Source: Charlesworth & Charlesworth 1987, from memory.
+    """
+    return floats(genomic_rate) * (0.5 / floats(h) - 1.0)
+
+
+def _moments(
+    ne: float, u: float, v: float, s: float, h: float, nodes: int
+) -> tuple[float, float, float]:
+    """Return E[x], E[x^2] and E[x(1-x)] of Wright's density by Gauss-Jacobi quadrature.
+
+    The two end weights x^(4 Ne u - 1) (1-x)^(4 Ne v - 1) go into the rule, so that the integrand
+    is smooth; the exponent is centred to stay in range.
+    """
+    low, high = 4.0 * ne * u, 4.0 * ne * v
+    points, weights = roots_jacobi(nodes, high - 1.0, low - 1.0)
+    x = 0.5 * (points + 1.0)
+    exponent = -2.0 * ne * s * (2.0 * h * x + (1.0 - 2.0 * h) * x**2)
+    mass = weights * np.exp(exponent - np.max(exponent))
+    mass = mass / np.sum(mass)
+    return (float(np.sum(mass * x)), float(np.sum(mass * x**2)), float(np.sum(mass * x * (1 - x))))
+
+
+def stationary_load(
+    ne: Numbers, s: Numbers, h: Numbers, u: Numbers = 1e-5, v: Numbers = 1e-7, nodes: int = _NODES
+) -> StationaryLoad:
+    """Return the load per locus that drift, selection and mutation settle at (Wright 1937).
+
+    Density ~ exp(-2 Ne s [2 h x + (1-2h) x^2]) x^(4 Ne u - 1) (1-x)^(4 Ne v - 1).
+
+    Parameters
+    ----------
+    ne, s, h, u, v : (...) array
+        Effective size; selection against the homozygote; dominance; mutation to and from, above 0.
+    nodes : int
+        Points of the quadrature; 400 carry six figures up to 2 Ne s of some 10,000.
+
+    Returns
+    -------
+    StationaryLoad
+        Realised E[s (2 h x (1-x) + x^2)] and masked E[s (1-2h) x (1-x)], losses of log fitness per
+        locus. It takes some 1/u generations to get there. Diffusion: poor where s is not small.
+
+    Raises
+    ------
+    ValueError
+        If a mutation rate is not above 0: then no lasting state exists.
+    """
+    arrays = np.broadcast_arrays(*(floats(x) for x in (ne, u, v, s, h)))
+    if np.any(arrays[1] <= 0.0) or np.any(arrays[2] <= 0.0):
+        raise ValueError("a stationary state needs both mutation rates above 0")
+    rows = zip(*(a.ravel() for a in arrays), strict=True)
+    moments = np.array([_moments(*(float(x) for x in row), nodes) for row in rows])
+    mean, square, mixed = (moments[:, i].reshape(arrays[0].shape) for i in range(3))
+    s_, h_ = arrays[3], arrays[4]
+    realised = s_ * (2.0 * h_ * mixed + square)
+    return StationaryLoad(mean[()], realised[()], (s_ * (1.0 - 2.0 * h_) * mixed)[()])
+
+
+def house_of_cards_variance(
+    loci: Numbers, u: Numbers, effect_variance: Numbers, ne: Numbers, strength: Numbers
+) -> FloatArray:
+    """Return V_A ~ 4 n u a2 Ne / (1 + a2 Ne / V_s), held by mutation against stabilising selection.
+
+    Parameters
+    ----------
+    loci, u : (...) array
+        n loci of the trait; mutation rate per locus.
+    effect_variance : (...) array
+        a2, variance of new mutations' effects, trait unit squared.
+    ne : (...) array
+        Effective size, animals.
+    strength : (...) array
+        V_s = w2 + V_E, trait unit squared.
+
+    Returns
+    -------
+    (...) array
+        Trait unit squared; 4 n u V_s for large Ne, 4 n u a2 Ne = 2 Ne V_m for small. Source:
+        stochastic house of cards, Buerger & Lynch 1995, from memory, not checked otherwise.
+    """
+    spread = floats(effect_variance) * floats(ne)
+    return 4.0 * floats(loci) * floats(u) * spread / (1.0 + spread / floats(strength))
