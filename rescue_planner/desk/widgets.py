@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QRect, QSize, Qt
+from PySide6.QtCore import QEvent, QRect, QSize, Qt
 from PySide6.QtGui import QPainter, QPaintEvent, QPalette, QPen
 from PySide6.QtWidgets import (
     QAbstractButton,
     QFrame,
+    QHBoxLayout,
     QLabel,
     QPushButton,
     QScrollArea,
@@ -97,6 +98,32 @@ class Link(QAbstractButton):
             painter.setPen(QPen(colours.color(QPalette.ColorRole.Highlight), 2))
             painter.drawRect(self.rect().adjusted(1, 1, -1, -1))
         painter.end()
+
+
+class Column(QWidget):
+    """Holds a column of text no wider than so many letters, at the left of the room there is.
+
+    A scroll area asks its widget for the height at the width of the whole area, so the widget
+    itself must not be the one with the greatest width.
+    """
+
+    def __init__(self, inner: QWidget, letters: int) -> None:
+        super().__init__()
+        self._inner, self._letters = inner, letters
+        row = QHBoxLayout(self)
+        row.setContentsMargins(0, 0, 0, 0)
+        row.setSpacing(0)
+        row.addWidget(inner, 1)
+        row.addStretch(0)
+        self._fit()
+
+    def changeEvent(self, event: QEvent) -> None:
+        super().changeEvent(event)
+        if event.type() in (QEvent.Type.FontChange, QEvent.Type.StyleChange):
+            self._fit()
+
+    def _fit(self) -> None:
+        self._inner.setMaximumWidth(self.fontMetrics().averageCharWidth() * self._letters)
 
 
 def bring_into_view(widget: QWidget) -> None:

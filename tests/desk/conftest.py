@@ -120,6 +120,7 @@ def make_window(qtbot) -> Iterator[Callable[[], DeskWindow]]:
         with qtbot.waitExposed(window):
             window.show()
         window.activateWindow()
+        qtbot.waitUntil(window.isActiveWindow)
         made.append(window)
         return window
 

@@ -94,6 +94,7 @@ class Section(QWidget):
         self._rows.setSpacing(theme.HALF)
         self._plan.build(self, case)
         self._column.addWidget(self._body)
+        self._body.show()  # at once, not with the next event: the focus may go there
         again = next((f for f in self._fields if path and f.path == path), None)
         if again is not None:
             again.edit.setFocus(Qt.FocusReason.OtherFocusReason)

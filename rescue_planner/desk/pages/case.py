@@ -15,10 +15,10 @@ from rescue_planner.desk.case_page.section import Section
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.evidence import evidence_in_words
 from rescue_planner.desk.flow import FlowLayout
-from rescue_planner.desk.widgets import Link, rule, scrolled, text
+from rescue_planner.desk.widgets import Column, Link, rule, scrolled, text
 
 SECTIONS = (DECISION, TIME, RECIPIENT, DONORS, LIFE, COST, LOCI, TRAIT, TARGETS)
-WIDEST = 112  # of the column, in grid units times the text size
+LETTERS = 112  # of the column
 
 
 class CasePage(QWidget):
@@ -40,7 +40,7 @@ class CasePage(QWidget):
         for section in self.sections.values():
             column.addWidget(section)
         column.addStretch(1)
-        self.area = scrolled(self.inner)
+        self.area = scrolled(Column(self.inner, LETTERS))
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
         outer.setSpacing(0)
@@ -48,8 +48,6 @@ class CasePage(QWidget):
         outer.addWidget(rule())
         outer.addWidget(self.area, 1)
         desk.document.changed.connect(self.refresh)
-        desk.view.changed.connect(self._fit)
-        self._fit()
         if desk.document.has_case:
             self.refresh(desk.document.case)
 
@@ -65,9 +63,6 @@ class CasePage(QWidget):
             flow.addWidget(link)
             self.links[name] = link
         return links
-
-    def _fit(self) -> None:
-        self.inner.setMaximumWidth(round(theme.UNIT * WIDEST * self._desk.view.text_scale))
 
     def refresh(self, case: Case) -> None:
         """Follow the case."""

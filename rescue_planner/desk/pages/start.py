@@ -13,8 +13,9 @@ from rescue_planner.desk import theme
 from rescue_planner.desk.file_actions import FileActions
 from rescue_planner.desk.recovery import Leftover, leftovers
 from rescue_planner.desk.settings import Settings
-from rescue_planner.desk.widgets import button, rule, scrolled, text
+from rescue_planner.desk.widgets import Column, button, rule, scrolled, text
 
+LETTERS = 108  # of the column
 LEAD = (
     "Bring in animals or not, from where, how many, how often, and when to stop: describe a small, "
     "isolated population, put plans side by side, and see what each buys and what it costs."
@@ -50,10 +51,9 @@ class StartPage(QWidget):
         self._add_recent()
         self._add_shipped()
         self._column.addStretch(1)
-        inner.setMaximumWidth(880)
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
-        outer.addWidget(scrolled(inner))
+        outer.addWidget(scrolled(Column(inner, LETTERS)))
 
     def _section(self, words: str) -> None:
         self._column.addSpacing(theme.UNIT * 2)

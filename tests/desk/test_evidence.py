@@ -1,0 +1,73 @@
+"""Lines beside the fields, checked without widgets."""
+
+from __future__ import annotations
+
+from rescue_planner.case.edits import set_value
+from rescue_planner.desk.evidence import (
+    evidence,
+    generations_in_words,
+    inbreeding_cost_in_words,
+    ratio_in_words,
+    screen_in_words,
+)
+
+
+def test_that_numbers_are_counted_by_origin(small) -> None:
+    # T; adults, two breeders, Ne, two diversities; four of the donor; 3 + 1 + 1 of the locus; B
+    assert evidence(small) == {"measured": 1, "borrowed": 0, "guessed": 0, "not stated": 16}
+
+
+def test_that_effective_size_and_census_stand_side_by_side(small) -> None:
+    assert ratio_in_words(small) == (
+        "Ne is 0.40 of the adults counted.  Inbreeding today: F = 1 − 0.42/0.68 = 0.38."
+    )
+
+
+def test_that_fifty_years_of_four_are_twelve_and_a_half_generations(small) -> None:
+    case = set_value(small, "time.horizon_years", 50).case
+    assert generations_in_words(case) == "2027 to 2077: 50 years are 12.5 generations."
+
+
+def test_that_seven_diploid_are_three_and_a_half_haploid(small) -> None:
+    # exp(-3.5 * 0.125) = 0.646 and exp(-3.5 * 0.25) = 0.417 (Morton, Crow & Muller 1956)
+    assert inbreeding_cost_in_words(small).startswith(
+        "7 diploid (3.5 haploid) in the first year: young of F = 0.125 survive 65 %, of F = 0.25 "
+        "42 % as well as outbred young."
+    )
+
+
+def test_that_an_unanswered_screen_is_not_called_low(small) -> None:
+    words = screen_in_words(small.donors[0])
+    assert words.startswith("Not known: same species, fixed chromosome differences")
+    assert "unknown is not low" in words
+
+
+def test_that_answers_that_raise_the_risk_are_named(small) -> None:
+    raised = set_value(
+        small,
+        "donors[0].screen",
+        {
+            "same_species": "yes",
+            "fixed_chromosome_differences": "yes",
+            "years_apart": 700,
+            "environment_differs": "much",
+        },
+    ).case
+    words = screen_in_words(raised.donors[0])
+    assert "fixed chromosome differences" in words
+    assert "more than 500 years apart" in words
+    assert "environment differs (much)" in words
+
+
+def test_that_a_clean_screen_is_still_no_proof(small) -> None:
+    clean = set_value(
+        small,
+        "donors[0].screen",
+        {
+            "same_species": "yes",
+            "fixed_chromosome_differences": "no",
+            "years_apart": 80,
+            "environment_differs": "no",
+        },
+    ).case
+    assert screen_in_words(clean.donors[0]).endswith("this is a screen, not a proof.")
