@@ -194,12 +194,14 @@ def test_that_decline_at_the_start_while_ne_is_held_is_said(mean, said_):
     assert said(raw, "decline-with-size-held") == {}
 
 
-def test_that_survival_of_unrelated_young_falls_by_the_cost_before_growth_is_looked_at():
-    """The cost exp(-(B/2) F) with B = 12 leaves a tenth of the births, so growth falls below 1."""
+@pytest.mark.parametrize("part", ["first_year", "young_per_female"])
+def test_that_rates_of_unrelated_animals_fall_by_the_cost_before_growth_is_looked_at(part):
+    """Births times b = exp(-(B/2) F) for either cost, B = 12: L^2 = b L + 0.75 b."""
     raw = put(steady_cycle(), life_cycle__survival_measured="unrelated_parents")
     assert said(raw, "decline-with-size-held") == {}
-    raw = put(raw, inbreeding_cost__lethal_equivalents_diploid={"first_year": 12})
-    growth = (0.5 * (b := math.exp(-6 * (1 - 0.42 / 0.68)))) + math.sqrt(b * b / 4 + 0.75 * b)
+    raw = put(raw, inbreeding_cost__lethal_equivalents_diploid={part: 12})
+    b = math.exp(-6 * (1 - 0.42 / 0.68))
+    growth = b / 2 + math.sqrt(b * b / 4 + 0.75 * b)
     assert f"({growth:.3f} a year)" in said(raw, "decline-with-size-held")["life_cycle"]
 
 
