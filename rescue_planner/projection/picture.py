@@ -105,8 +105,15 @@ def picture(
         decimals=decimals,
         widest=_widest(comparison, key, decimals),
         empty=empty,
-        description=empty or reading.describe(comparison, key, plans),
+        description=empty or _described(comparison, key, plans, targets),
     )
+
+
+def _described(
+    comparison: Comparison, key: str, plans: Sequence[str], targets: Sequence[TargetMark]
+) -> str:
+    goals = [f"Target {goal.words}, by {reading.year_text(goal.year)}." for goal in targets]
+    return " ".join([reading.describe(comparison, key, plans), *goals])
 
 
 def _has(comparison: Comparison, plan: str, key: str) -> bool:

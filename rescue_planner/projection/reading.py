@@ -84,6 +84,8 @@ def shown(key: str, value: float, decimals: int) -> str:
             return f"< {number(least, decimals)}"
         if 100.0 - least / 2 <= value < 100.0:
             return f"> {number(100.0 - least, decimals)}"
+    if split(key)[0] in ("adults", "donor_adults") and decimals == 0 and 0.0 < value < 1.0:
+        return "< 1"  # the population is gone: no rounding up to an animal
     return number(value, decimals)
 
 
@@ -231,7 +233,7 @@ def references(comparison: Comparison, key: str) -> tuple[tuple[str, float], ...
 
 @dataclass(frozen=True, slots=True)
 class TargetMark:
-    """A target on a chart: where it stands, which side is met, whose it is."""
+    """A target on a chart: where it stands (its year included), which side is met, whose it is."""
 
     year: float
     value: float
@@ -250,9 +252,8 @@ def target_marks(case: Case, key: str) -> tuple[TargetMark, ...]:
                 continue
             value = float(bound.best) * scale(key)
             sign = "≥" if at_least else "≤"
-            by = f"{sign} {value:g} by {year_text(float(target.by_year.best))}"
-            owner = target.owner or "owner not stated"
-            marks.append(TargetMark(float(target.by_year.best), value, at_least, f"{by}, {owner}"))
+            words = f"{sign} {value:g}, {target.owner or 'owner not stated'}"
+            marks.append(TargetMark(float(target.by_year.best), value, at_least, words))
     return tuple(marks)
 
 
@@ -262,16 +263,6 @@ def target_marks(case: Case, key: str) -> tuple[TargetMark, ...]:
 def letter(comparison: Comparison, plan: str) -> str:
     """Return the letter of a plan."""
     return mark(comparison.marks[comparison.plans.index(plan)]).letter
-
-
-def read(comparison: Comparison, plan: str, key: str, t: int) -> str:
-    """Return one plan's shown value at t, `gone` once nobody is left, `–` if not computed."""
-    line = curve(comparison, plan, key)
-    if line is None:
-        return "–"
-    if t >= line.values.size:
-        return "gone"
-    return shown(key, float(line.values[t]), column_places(comparison, key, (plan,)))
 
 
 def column_places(
@@ -305,18 +296,18 @@ def describe(comparison: Comparison, key: str, plans: Sequence[str]) -> str:
         f"{title(key)}, {unit_text(comparison, key)}, "
         f"{year_text(float(years[0]))} to {year_text(float(years[-1]))}."
     )
-    return " ".join([head, *(_course(comparison, key, plan) for plan in plans)])
+    decimals = column_places(comparison, key, comparison.plans)
+    return " ".join([head, *(_course(comparison, key, plan, decimals) for plan in plans)])
 
 
-def _course(comparison: Comparison, key: str, plan: str) -> str:
+def _course(comparison: Comparison, key: str, plan: str, decimals: int) -> str:
     line = curve(comparison, plan, key)
     name = f"{letter(comparison, plan)} {plan}"
     if line is None:
         return f"{name}: not projected."
     if not line.values.size:
         return f"{name}: the population is gone from the start."
-    start = read(comparison, plan, key, 0)
-    end = read(comparison, plan, key, line.values.size - 1)
+    start, end = (shown(key, float(line.values[t]), decimals) for t in (0, -1))
     words = f"{name}: {start} to {end}"
     if line.gone_by is not None:
         words += f", fewer than one adult left by {year_text(line.gone_by)}"

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 import re
 
 from rescue_planner.case.document import Case
@@ -65,10 +66,10 @@ def read_years(text: str) -> tuple[float, ...]:
 
 
 def usual_years(comparison: Comparison) -> tuple[float, ...]:
-    """Return the years a table opens on: start, a generation each at a third and two, horizon."""
+    """Return the whole years a table opens on: start, one and two thirds of the way, horizon."""
     count = comparison.years.size - 1
     at = sorted({0, round(count / 3), round(2 * count / 3), count})
-    return tuple(float(comparison.years[t]) for t in at)
+    return tuple(float(math.ceil(comparison.years[t] - 1e-6)) for t in at)
 
 
 def years_outside(comparison: Comparison, years: tuple[float, ...]) -> str:

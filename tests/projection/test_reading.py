@@ -80,6 +80,11 @@ def test_that_the_error_bounds_the_digits():
     assert reading.places("adults", [40.25, 12.3], error=12.0) == 0
 
 
+def test_that_less_than_one_animal_is_not_rounded_up_to_one():
+    assert reading.shown("adults", 0.7, 0) == "< 1"
+    assert reading.shown("adults", 0.7, 1) == "0.7"
+
+
 # curves
 
 
@@ -125,7 +130,7 @@ def test_that_the_range_holds_every_plan_target_and_reference(case, comparison):
 def test_that_a_target_is_marked_in_the_unit_shown_with_its_owner(case):
     (mark,) = reading.target_marks(case, "gene_diversity_kept")
     assert (mark.year, mark.value, mark.at_least) == (2066.0, 90.0, True)
-    assert mark.words == "≥ 90 by 2066, Marsh Trust"
+    assert mark.words == "≥ 90, Marsh Trust"
     (other,) = reading.target_marks(case, "donor_ancestry")
     assert other.words.endswith("owner not stated")
 
@@ -166,6 +171,11 @@ def test_that_the_read_out_is_the_value_of_the_comparison(case, comparison):
         for t in range(line.curve.values.size):
             assert float(made.text_at(line, t)) == pytest.approx(100 * series.values[t], abs=0.05)
     assert made.text_at(made.lines[0], comparison.years.size - 1) == "gone"
+
+
+def test_that_targets_are_told_with_their_year(case, comparison):
+    made = picture(comparison, case, "gene_diversity_kept", comparison.plans)
+    assert made.description.endswith("Target ≥ 90, Marsh Trust, by 2066.")
 
 
 def test_that_hidden_plans_are_not_drawn_but_keep_the_range(case, comparison):

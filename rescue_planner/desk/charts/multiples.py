@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import pyqtgraph as pg
-from PySide6.QtCore import QPointF, QRectF, Qt, QTimer, Signal
+from PySide6.QtCore import QCoreApplication, QEvent, QPointF, QRectF, Qt, QTimer, Signal
 from PySide6.QtGui import (
     QColor,
     QContextMenuEvent,
@@ -72,7 +72,9 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
     def show_all(self, shown: Shown) -> None:
         """Draw this in the next frame."""
         self._wanted, self._message = shown, ""
-        if not self._timer.isActive():
+        if self.shown is None:
+            self.flush()
+        elif not self._timer.isActive():
             self._timer.start()
 
     def show_message(self, words: str) -> None:
@@ -82,7 +84,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         self._message = words
         self._set_count(0)
         self.setAccessibleDescription(words)
-        self.setFixedHeight(96)
+        self._take_height(96)
         self.viewport().update()
 
     @property
@@ -132,7 +134,13 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
     def _place(self) -> None:
         if self.shown is not None and self.panels:
             look, width = self.shown.look, self.width()
-            self.setFixedHeight(self.grid.place(self.panels, width, look.text_scale))
+            self._take_height(self.grid.place(self.panels, width, look.text_scale))
+
+    def _take_height(self, height: int) -> None:
+        """Take a height, and let the page make room at once: no frame shows half a chart."""
+        if height != self.minimumHeight() or height != self.maximumHeight():
+            self.setFixedHeight(height)
+            QCoreApplication.sendPostedEvents(None, QEvent.Type.LayoutRequest.value)
 
     def _show_time(self) -> None:
         assert self.shown is not None
@@ -141,7 +149,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         room = EDGE * (last - first)
         label = QFontMetricsF(self.shown.look.font()).horizontalAdvance(year_text(last))
         wide = PLOT_SHARE * self.width() / max(1, self.grid.columns)
-        most = max(2, min(4, round(wide / (2 * label))))
+        most = max(2, min(4, round(wide / (1.7 * label))))
         ticks = {axis: time_ticks(comparison, axis, most) for axis in ("years", "generations")}
         for panel in self.panels:
             panel.show_time((first - room, last + room), ticks, panel.time.rows)

@@ -13,6 +13,8 @@ from rescue_planner.desk.charts.gutters import GAP, Gutter
 from rescue_planner.projection.placing import Box, quietest
 from rescue_planner.projection.reading import TargetMark, year_text
 
+TARGET_SHARE = 0.66  # of the plot's width, at most, for the words of a target
+
 
 class Ground(Gutter):
     """Hairlines behind the lines: ticks and reference values."""
@@ -151,7 +153,7 @@ class Overlay(Gutter):
         painter.setBrush(Qt.BrushStyle.NoBrush)
         metrics = QFontMetricsF(self.look.font())
         words = metrics.elidedText(
-            mark.words, Qt.TextElideMode.ElideRight, float(self.size().width()) - GAP
+            mark.words, Qt.TextElideMode.ElideRight, float(self.size().width()) * TARGET_SHARE
         )
         wide, tall = self._size_of(words)
         under, over = y + 3, y - tall - 3

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QVBoxLayout, QWidget
+from PySide6.QtGui import QResizeEvent
+from PySide6.QtWidgets import QBoxLayout, QHBoxLayout, QScrollArea, QVBoxLayout, QWidget
 
 from rescue_planner.case.document import Case
 from rescue_planner.case.measures import split
@@ -65,15 +66,19 @@ class ComparePage(QWidget):
         self.export_button = button("Export…", said="Export the plans and measures shown")
 
     def _lay_out(self) -> None:
-        top = QHBoxLayout()
+        top = self.top = QBoxLayout(QBoxLayout.Direction.LeftToRight)
         top.setSpacing(theme.UNIT)
         words = QVBoxLayout()
         words.setSpacing(2)
         words.addWidget(self.question)
         words.addWidget(self.decision)
         top.addLayout(words, 1)
+        buttons = QHBoxLayout()
+        buttons.setSpacing(theme.UNIT)
         for made in (self.measures_button, self.export_button):
-            top.addWidget(made, 0, Qt.AlignmentFlag.AlignTop)
+            buttons.addWidget(made, 0, Qt.AlignmentFlag.AlignTop)
+        buttons.addStretch(1)
+        top.addLayout(buttons)
         self.chooser.hide()
         self.body = QWidget(self)
         column = QVBoxLayout(self.body)
@@ -120,6 +125,12 @@ class ComparePage(QWidget):
         self.chooser.offer(case, comparison)
         shown = [key for key in self.chooser.shown_keys() if _of_locus(key)]
         return specs(shown, plans)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        wide = self.width() >= 640 * self._desk.view.text_scale
+        way = QBoxLayout.Direction.LeftToRight if wide else QBoxLayout.Direction.TopToBottom
+        self.top.setDirection(way)
 
     def _show_chooser(self, shown: bool) -> None:
         self.chooser.setVisible(shown)

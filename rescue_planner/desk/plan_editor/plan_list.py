@@ -56,7 +56,7 @@ class PlanList(QWidget):
     def __init__(self, desk: Desk, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._desk = desk
-        self._current = NO_RELEASES
+        self._current = self._first()
         self._drawn: tuple[object, ...] = ()
         self.list = _List(self)
         self.list.setAccessibleName("Plans")
@@ -108,6 +108,11 @@ class PlanList(QWidget):
         """The plan that is being edited."""
         return self._current
 
+    def _first(self) -> str:
+        """Return the plan that is edited first: one in which there is something to edit."""
+        names = self.names()
+        return names[1] if len(names) > 1 else NO_RELEASES
+
     def names(self) -> list[str]:
         """Return the names of the plans, in their order."""
         document = self._desk.document
@@ -121,8 +126,7 @@ class PlanList(QWidget):
             self.chosen.emit(plan)
 
     def _replaced(self) -> None:
-        names = self.names()
-        self._current = names[1] if len(names) > 1 else NO_RELEASES
+        self._current = self._first()
         self.refresh()
         self.chosen.emit(self._current)
 
