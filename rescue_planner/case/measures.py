@@ -30,7 +30,7 @@ class Measure:
 
 
 MEASURES: tuple[Measure, ...] = (
-    Measure("adults", "Adults", "adults", "count", "Adults alive before breeding."),
+    Measure("adults", "Adults", "animals", "count", "Adults alive before breeding."),
     Measure("young", "Young", "young at age 1", "count", "Animals of age 1 at the census."),
     Measure(
         "gene_diversity",

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import hashlib
-import json
 from collections.abc import Callable, Iterator, Sequence
 from functools import lru_cache
 
@@ -11,6 +10,7 @@ import numpy as np
 
 from rescue_planner import __version__
 from rescue_planner.case.document import Case
+from rescue_planner.case.file import case_hash
 from rescue_planner.case.measures import keys
 from rescue_planner.projection.exact import locus_odds
 from rescue_planner.projection.expected import Course, expected_course
@@ -20,17 +20,11 @@ from rescue_planner.projection.setup import setup
 LIVE_DEPTHS: tuple[Depth, ...] = ("expected", "exact")
 
 
-def inputs_hash(case: Case) -> str:
-    """Return the SHA-256 of everything the case says, in one canonical form."""
-    whole = json.dumps(case.model_dump(mode="json"), sort_keys=True, separators=(",", ":"))
-    return hashlib.sha256(whole.encode()).hexdigest()
-
-
 def comparison_key(
     case: Case, plans: Sequence[str], depths: Sequence[str], what_if: str | None = None
 ) -> str:
     """Return the hash of all that a comparison depends on, the program's version included."""
-    parts = [__version__, inputs_hash(case), what_if or "", *plans, "/", *depths]
+    parts = [__version__, case_hash(case), what_if or "", *plans, "/", *depths]
     return hashlib.sha256("\x1f".join(parts).encode()).hexdigest()
 
 
@@ -80,7 +74,7 @@ def compare(
     present = {one.measure for one in series}
     return Comparison(
         key=comparison_key(case, chosen, depths, what_if),
-        case_hash=inputs_hash(case),
+        case_hash=case_hash(case),
         title=case.title,
         what_if=what_if,
         program_version=__version__,

@@ -345,3 +345,11 @@ def test_that_an_answer_finds_its_remark():
 
 def test_that_a_remark_on_the_whole_case_has_a_name_without_blanks():
     assert Remark("disease-not-assessed", "", "x").name == "disease-not-assessed"
+
+
+def test_that_a_what_if_that_finds_nothing_is_said_and_stops_nothing():
+    change = {"path": "plans[8].effective_size", "set": 2}
+    raw = changed(full(), "what_ifs[0].changes[0]", change)
+    (text,) = said(raw, "what-if-changes-nothing").values()
+    assert "finds nothing" in text
+    assert said(full(), "what-if-changes-nothing") == {}

@@ -4,10 +4,13 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from rescue_planner.case import fields
 from rescue_planner.case.document import Case
 from rescue_planner.case.filled import step_of, steps
 from rescue_planner.case.noting.base import Remark
+from rescue_planner.case.paths import steps_of
 from rescue_planner.case.plans import Plan, RuleRelease
+from rescue_planner.case.raw import to_raw
 
 DISEASE = (
     "Disease risk is not assessed by this projection. A disease risk analysis led by qualified "
@@ -33,6 +36,21 @@ def on_plans(case: Case) -> Iterator[Remark]:
     for place, plan in enumerate(case.plans):
         yield from _releases(case, plan, f"plans[{place}]")
     yield from _targets(case)
+    yield from _what_ifs(case)
+
+
+def _what_ifs(case: Case) -> Iterator[Remark]:
+    """Yield changes that find nothing: plans may have gone since the question was asked."""
+    raw = to_raw(case)
+    for place, what_if in enumerate(case.what_ifs):
+        for which, change in enumerate(what_if.changes):
+            if not any(True for _ in fields.matches(raw, steps_of(change.path))):
+                yield Remark(
+                    "what-if-changes-nothing",
+                    f"what_ifs[{place}].changes[{which}].path",
+                    f"The what-if “{what_if.name}” changes “{change.path}”, which finds nothing "
+                    "in this case: correct it, or read its results as unchanged in that point.",
+                )
 
 
 def _givers(plan: Plan) -> Iterator[str]:
