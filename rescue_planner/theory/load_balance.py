@@ -66,14 +66,13 @@ def load_from_mutation(genomic_rate: Numbers, h: Numbers) -> FloatArray:
     return floats(genomic_rate) * (0.5 / floats(h) - 1.0)
 
 
-def _moments(
-    ne: float, u: float, v: float, s: float, h: float, nodes: int
-) -> tuple[float, float, float]:
+def _moments(given: FloatArray, nodes: int) -> tuple[float, float, float]:
     """Return E[x], E[x^2] and E[x(1-x)] of Wright's density by Gauss-Jacobi quadrature.
 
     The two end weights x^(4 Ne u - 1) (1-x)^(4 Ne v - 1) go into the rule, so that the integrand
     is smooth; the exponent is centred to stay in range.
     """
+    ne, u, v, s, h = (float(x) for x in given)
     low, high = 4.0 * ne * u, 4.0 * ne * v
     points, weights = roots_jacobi(nodes, high - 1.0, low - 1.0)
     x = 0.5 * (points + 1.0)
@@ -111,8 +110,8 @@ def stationary_load(
     arrays = np.broadcast_arrays(*(floats(x) for x in (ne, u, v, s, h)))
     if np.any(arrays[1] <= 0.0) or np.any(arrays[2] <= 0.0):
         raise ValueError("a stationary state needs both mutation rates above 0")
-    rows = zip(*(a.ravel() for a in arrays), strict=True)
-    moments = np.array([_moments(*(float(x) for x in row), nodes) for row in rows])
+    rows = np.stack([a.ravel() for a in arrays], axis=-1)
+    moments = np.array([_moments(row, nodes) for row in rows])
     mean, square, mixed = (moments[:, i].reshape(arrays[0].shape) for i in range(3))
     s_, h_ = arrays[3], arrays[4]
     realised = s_ * (2.0 * h_ * mixed + square)

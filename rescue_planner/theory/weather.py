@@ -127,6 +127,28 @@ def survivors_variance(animals: Numbers, mean: Numbers, sd: Numbers) -> FloatArr
     return n * mu * (1.0 - mu) + n * (n - 1.0) * floats(sd) ** 2
 
 
+def process_variance(observed_sd: Numbers, mean: Numbers, animals: Numbers) -> FloatArray:
+    """Return the variance of a yearly rate once chance in n single fates is taken off.
+
+    (n V - mean (1 - mean)) / (n - 1), V the variance of the yearly shares k/n, the reverse of
+    `survivors_variance`.
+
+    Parameters
+    ----------
+    observed_sd, mean : (...) array
+        SD among years and mean of the observed shares.
+    animals : (...) array
+        n watched each year, above 1.
+
+    Returns
+    -------
+    (...) array
+        Rate squared; below 0 where the years differ by no more than chance: shown as it is.
+    """
+    mu, n = floats(mean), floats(animals)
+    return (n * floats(observed_sd) ** 2 - mu * (1.0 - mu)) / (n - 1.0)
+
+
 def chance_all_die(animals: Numbers, mean: Numbers, sd: Numbers) -> FloatArray:
     """Return E[(1 - S)^n], S beta with this mean and SD shared by n animals.
 
