@@ -45,7 +45,7 @@ def button(words: str, *, kind: str = "", said: str = "") -> QAbstractButton:
         if kind:
             made.setObjectName(kind)
     made.setAccessibleName(said or words)
-    made.setMinimumSize(theme.TARGET, theme.TARGET)
+    made.setMinimumHeight(theme.TARGET)  # a least width would let words be cut off
     return made
 
 

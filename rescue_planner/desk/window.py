@@ -118,6 +118,7 @@ class DeskWindow(QMainWindow):
         self.current = key
         self.stack.setCurrentWidget(self.pages[key])
         self.rail.mark(key)
+        self._show_explainer()
 
     def _made(self, key: str) -> QWidget:
         if key == "start":
@@ -195,7 +196,8 @@ class DeskWindow(QMainWindow):
                 self._forget(page.key)
 
     def _show_explainer(self) -> None:
-        shown = self.settings.explainer and self.desk.document.has_case
+        explained = self.current in {page.key for page in PAGES}
+        shown = self.settings.explainer and explained and self.desk.document.has_case
         self.explainer.setVisible(shown)
         self.explainer_rule.setVisible(shown)
 

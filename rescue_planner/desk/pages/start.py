@@ -11,6 +11,7 @@ from PySide6.QtWidgets import QHBoxLayout, QVBoxLayout, QWidget
 from rescue_planner import places
 from rescue_planner.desk import theme
 from rescue_planner.desk.file_actions import FileActions
+from rescue_planner.desk.flow import FlowLayout
 from rescue_planner.desk.recovery import Leftover, leftovers
 from rescue_planner.desk.settings import Settings
 from rescue_planner.desk.widgets import Column, button, rule, scrolled, text
@@ -65,13 +66,12 @@ class StartPage(QWidget):
         self.open = button("Open a case…")
         self.new.clicked.connect(new_case)
         self.open.clicked.connect(self._files.open_dialog)
-        row = QHBoxLayout()
-        row.setSpacing(theme.UNIT)
-        row.addWidget(self.new)
-        row.addWidget(self.open)
-        row.addStretch(1)
+        holder = QWidget()
+        flow = FlowLayout(holder)
+        flow.addWidget(self.new)
+        flow.addWidget(self.open)
         self._column.addSpacing(theme.UNIT)
-        self._column.addLayout(row)
+        self._column.addWidget(holder)
         self._column.addWidget(
             text("About ten questions; “I don’t know” is an answer to all but the first.", "soft")
         )
