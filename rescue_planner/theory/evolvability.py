@@ -13,8 +13,8 @@ def selection_covariance(shares: Numbers, values: Numbers, fitness: Numbers) -> 
     """Return Cov(z, w) / mean(w), the change of a mean by selection among types.
 
     Robertson's theorem where z are breeding values. With z = w itself Fisher's: variance of fitness
-    over its mean, so that V_A of relative fitness is what a generation can gain; to offset a fall of
-    log fitness by 0.105 (10 %) V_A must be about that large.
+    over its mean, so that V_A of relative fitness is what a generation can gain. To offset a fall
+    of log fitness by 0.105 (10 %) V_A must be about that large.
 
     Parameters
     ----------

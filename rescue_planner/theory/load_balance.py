@@ -9,7 +9,7 @@ from memory; the stationary state was checked against the exact chain.
 from typing import NamedTuple
 
 import numpy as np
-from scipy.special import roots_jacobi
+from scipy.special import beta, roots_jacobi
 
 from rescue_planner.theory.arrays import FloatArray, Numbers, floats
 
@@ -66,20 +66,26 @@ def load_from_mutation(genomic_rate: Numbers, h: Numbers) -> FloatArray:
     return floats(genomic_rate) * (0.5 / floats(h) - 1.0)
 
 
-def _moments(given: FloatArray, nodes: int) -> tuple[float, float, float]:
-    """Return E[x], E[x^2] and E[x(1-x)] of Wright's density by Gauss-Jacobi quadrature.
+def _moments(given: FloatArray, nodes: int) -> tuple[float, float]:
+    """Return E[x] and E[x(1-x)] of Wright's density by Gauss-Jacobi quadrature.
 
-    The two end weights x^(4 Ne u - 1) (1-x)^(4 Ne v - 1) go into the rule, so that the integrand
-    is smooth; the exponent is centred to stay in range.
+    The density runs to infinity at both ends where mutation is rare. The straight line through the
+    selection factor's two end values is integrated exactly (beta functions); what is left vanishes
+    at both ends, so that the rule with weight x^(4 Ne u) (1-x)^(4 Ne v) serves.
     """
     ne, u, v, s, h = (float(x) for x in given)
     low, high = 4.0 * ne * u, 4.0 * ne * v
-    points, weights = roots_jacobi(nodes, high - 1.0, low - 1.0)
-    x = 0.5 * (points + 1.0)
+    points, weights = roots_jacobi(nodes, high, low)
+    weights, x = weights * 0.5 ** (low + high + 1.0), 0.5 * (points + 1.0)
+    ends = -2.0 * ne * s * np.array([0.0, 1.0])
     exponent = -2.0 * ne * s * (2.0 * h * x + (1.0 - 2.0 * h) * x**2)
-    mass = weights * np.exp(exponent - np.max(exponent))
-    mass = mass / np.sum(mass)
-    return (float(np.sum(mass * x)), float(np.sum(mass * x**2)), float(np.sum(mass * x * (1 - x))))
+    top = max(float(np.max(exponent)), float(np.max(ends)))
+    g, (left, right) = np.exp(exponent - top), np.exp(ends - top)
+    rest = (g - left * (1.0 - x) - right * x) / (x * (1.0 - x))
+    upper = right * beta(low + 1.0, high)
+    whole = left * beta(low, high + 1.0) + upper + np.sum(weights * rest)
+    mean = upper + np.sum(weights * (g - right) / (1.0 - x))
+    return float(mean / whole), float(np.sum(weights * g) / whole)
 
 
 def stationary_load(
@@ -94,7 +100,7 @@ def stationary_load(
     ne, s, h, u, v : (...) array
         Effective size; selection against the homozygote; dominance; mutation to and from, above 0.
     nodes : int
-        Points of the quadrature; 400 carry six figures up to 2 Ne s of some 10,000.
+        Points of the quadrature; 400 carry nine figures up to 2 Ne s of some 10,000.
 
     Returns
     -------
@@ -112,9 +118,9 @@ def stationary_load(
         raise ValueError("a stationary state needs both mutation rates above 0")
     rows = np.stack([a.ravel() for a in arrays], axis=-1)
     moments = np.array([_moments(row, nodes) for row in rows])
-    mean, square, mixed = (moments[:, i].reshape(arrays[0].shape) for i in range(3))
+    mean, mixed = (moments[:, i].reshape(arrays[0].shape) for i in range(2))
     s_, h_ = arrays[3], arrays[4]
-    realised = s_ * (2.0 * h_ * mixed + square)
+    realised = s_ * (2.0 * h_ * mixed + mean - mixed)
     return StationaryLoad(mean[()], realised[()], (s_ * (1.0 - 2.0 * h_) * mixed)[()])
 
 

@@ -1,0 +1,144 @@
+"""Load at equilibrium. Derived by quadrature, five figures printed; Wright 1937, from memory."""
+
+import mpmath
+import numpy as np
+import pytest
+from numpy.testing import assert_allclose
+
+from rescue_planner.theory import chain, load_balance, selection
+
+SIX = 1e-5
+FIVE = 3e-5  # values printed to five figures
+CASES = [(1e-5, 0.1, 0.2), (1e-5, 1.0, 0.02), (1e-5, 1.0, 0.0), (1e-6, 0.01, 0.45)]
+
+
+@pytest.mark.parametrize(
+    ("case", "q", "b"),
+    [
+        (CASES[0], 0.000499247, 2.99399e-05),
+        (CASES[1], 0.000488539, 0.000468768),
+        (CASES[2], 0.00316228, 0.00315228),
+        (CASES[3], 0.000222211, 2.22162e-07),
+    ],
+)
+def test_that_the_balance_and_its_load_are_as_stated(case, q, b):
+    """Derived: selection, then mutation, none back."""
+    u, s, h = case
+    found = load_balance.equilibrium_frequency(u, s, h)
+    assert_allclose(found, q, rtol=SIX)
+    assert_allclose(found * (1 - found) * s * (1 - 2 * h), b, rtol=SIX)
+
+
+@pytest.mark.parametrize("case", CASES)
+def test_that_the_balance_is_a_fixed_point_of_selection_and_mutation(case):
+    u, s, h = case
+    q = load_balance.equilibrium_frequency(u, s, h)
+    after = selection.after_selection(q, [1 - s, 1 - h * s, 1.0])
+    assert_allclose(selection.after_mutation(after, u, 0.0), q, rtol=1e-12)
+
+
+def test_that_shortcuts_hold_where_they_should():
+    assert_allclose(load_balance.equilibrium_frequency(1e-8, 0.1, 0.3), 1e-8 / 0.03, rtol=1e-5)
+    assert_allclose(load_balance.equilibrium_frequency(1e-6, 0.5, 0.0), np.sqrt(2e-6), rtol=1e-12)
+    assert load_balance.equilibrium_frequency(1e-3, 1e-4, 0.0) == 1.0
+    assert load_balance.equilibrium_frequency(1e-3, 0.0, 0.0) == 1.0
+
+
+def test_that_genomic_mutation_gives_the_stated_load():
+    assert_allclose(load_balance.load_from_mutation(1.0, [0.05, 0.1, 0.25]), [9, 4, 1], rtol=1e-13)
+
+
+@pytest.mark.parametrize(
+    ("s", "h", "ne", "q", "realised", "masked"),
+    [
+        (0.02, 0.2, 25, 0.97355, 19.471, 0.00022144),
+        (0.02, 0.2, 100, 0.6484, 12.962, 0.0058115),
+        (0.02, 0.2, 500, 0.0021846, 0.01996, 0.023731),
+        (0.02, 0.2, 5000, 0.0024279, 0.019835, 0.028724),
+        (0.1, 0.1, 100, 0.00061486, 0.017925, 0.043562),
+        (0.1, 0.1, 5000, 0.00096186, 0.019667, 0.076519),
+        (1.0, 0.02, 25, 0.0001187, 0.013668, 0.10503),
+        (1.0, 0.02, 5000, 0.00044757, 0.018974, 0.42859),
+    ],
+)
+def test_that_the_stationary_load_is_as_stated(s, h, ne, q, realised, masked):
+    """Per 1000 loci with u = 1e-5, v = 1e-7."""
+    found = load_balance.stationary_load(ne, s, h)
+    stated = (q, realised / 1000, masked / 1000)
+    # the frequency is printed to four or five figures, so its own last digit is the tolerance
+    assert_allclose(found, stated, rtol=5e-5)
+
+
+def stationary_vector(matrix):
+    """Grassmann, Taghi & Heyman's elimination: no subtraction, so every share keeps its digits."""
+    a, n = matrix.copy(), len(matrix)
+    for k in range(n - 1, 0, -1):
+        a[:k, k] /= a[k, :k].sum()
+        a[:k, :k] += np.outer(a[:k, k], a[k, :k])
+    out = np.zeros(n)
+    out[0] = 1.0
+    for k in range(1, n):
+        out[k] = out[:k] @ a[:k, k]
+    return out / out.sum()
+
+
+@pytest.mark.parametrize("ne", [25, 50, 100])
+def test_that_the_stationary_load_is_the_exact_chains_where_selection_is_weak(ne):
+    """Independent: the Wright-Fisher matrix, s = 0.02; the diffusion is within 1 %.
+
+    The masked load is compared over pairs of distinct copies, which takes 1/(2N) out.
+    """
+    n, s, h = 2 * ne, 0.02, 0.2
+    x = chain.frequencies(n)
+    selected = selection.after_selection(x, [1 - s, 1 - h * s, 1.0])
+    following = selection.after_mutation(selected, 1e-5, 1e-7)
+    vector = stationary_vector(chain.transition_matrix(following, n))
+    masked = np.sum(vector * s * (1 - 2 * h) * x * (1 - x)) / (1 - 1 / n)
+    found = load_balance.stationary_load(ne, s, h)
+    assert_allclose(found.frequency, np.sum(vector * x), rtol=0.01)
+    assert_allclose(found.masked, masked, rtol=0.01)
+
+
+def test_that_without_selection_the_mean_frequency_is_that_of_mutation_alone():
+    found = load_balance.stationary_load([20, 2000], 0.0, 0.3, 3e-4, 1e-4)
+    assert_allclose(found.frequency, 0.75, rtol=1e-9)
+    assert_allclose(found.realised, 0.0, atol=1e-18)
+
+
+@pytest.mark.parametrize(("ne", "s", "h"), [(25, 0.02, 0.2), (100, 0.02, 0.2), (5000, 1.0, 0.02)])
+def test_that_the_quadrature_is_that_of_arbitrary_precision(ne, s, h):
+    """mpmath with 40 digits, the masked load as a ratio of two integrals."""
+    with mpmath.workdps(40):
+        low, high = 4 * ne * mpmath.mpf("1e-5"), 4 * ne * mpmath.mpf("1e-7")
+        s_, h_ = mpmath.mpf(s), mpmath.mpf(h)
+        edges = [0, "0.001", "0.02", "0.1", "0.3", "0.6", "0.9", "0.99", 1]
+        pieces = [mpmath.mpf(x) for x in edges]
+
+        def g(x):
+            return mpmath.exp(-2 * ne * s_ * (2 * h_ * x + (1 - 2 * h_) * x * x))
+
+        def rest(x):
+            line = g(mpmath.mpf(0)) * (1 - x) + g(mpmath.mpf(1)) * x
+            return x**low * (1 - x) ** high * (g(x) - line) / (x * (1 - x))
+
+        whole = mpmath.quad(rest, pieces) + mpmath.beta(low, high + 1)
+        whole += g(mpmath.mpf(1)) * mpmath.beta(low + 1, high)
+        mixed = mpmath.quad(lambda x: x**low * (1 - x) ** high * g(x), pieces)
+        masked = float(s_ * (1 - 2 * h_) * mixed / whole)
+    assert_allclose(load_balance.stationary_load(ne, s, h).masked, masked, rtol=1e-10)
+
+
+def test_that_no_mutation_has_no_lasting_state():
+    with pytest.raises(ValueError, match="above 0"):
+        load_balance.stationary_load(50, 0.1, 0.1, 0.0, 1e-7)
+
+
+def test_that_the_house_of_cards_lies_between_its_two_limits():
+    """Buerger & Lynch 1995, from memory: only evaluated, not checked otherwise."""
+    stated = [0.0470588, 0.16, 0.571429]
+    found = load_balance.house_of_cards_variance(50, 2e-4, 0.05, [25, 100, 1000], 20.0)
+    assert_allclose(found, stated, rtol=SIX)
+    small = load_balance.house_of_cards_variance(50, 2e-4, 0.05, 1e-3, 20.0)
+    assert_allclose(small, 4 * 50 * 2e-4 * 0.05 * 1e-3, rtol=1e-5)
+    large = load_balance.house_of_cards_variance(50, 2e-4, 0.05, 1e9, 20.0)
+    assert_allclose(large, 4 * 50 * 2e-4 * 20.0, rtol=1e-6)
