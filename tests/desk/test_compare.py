@@ -31,14 +31,28 @@ def marsh(**changes):
 
 
 @pytest.fixture
-def page(qtbot, desk):
-    made = ComparePage(desk)
-    qtbot.addWidget(made)
-    made.resize(1000, 720)
+def show_page(qtbot, desk):
+    """Return a function that shows a page of the desk; pages live as long as the test."""
+    kept = []
+
+    def show():
+        made = ComparePage(desk)
+        kept.append(made)
+        qtbot.addWidget(made)
+        made.resize(1000, 720)
+        with qtbot.waitExposed(made):
+            made.show()
+        made.activateWindow()
+        return made
+
+    yield show
+    kept.clear()
+
+
+@pytest.fixture
+def page(desk, show_page):
     desk.document.new(marsh())
-    with qtbot.waitExposed(made):
-        made.show()
-    made.activateWindow()
+    made = show_page()
     settle(made)
     return made
 
@@ -279,11 +293,8 @@ def test_that_a_stale_comparison_is_never_drawn_or_tabled(page, desk):
     assert not page.export_button.isEnabled()
 
 
-def test_that_without_a_case_the_page_says_so(qtbot, desk):
-    made = ComparePage(desk)
-    qtbot.addWidget(made)
-    made.resize(900, 600)
-    made.show()
+def test_that_without_a_case_the_page_says_so(show_page):
+    made = show_page()
     assert "No case is open" in made.averages.charts.message
     assert not made.export_button.isEnabled()
     assert not made.values.isVisibleTo(made)

@@ -23,14 +23,28 @@ def marsh(**changes):
 
 
 @pytest.fixture
-def page(qtbot, desk):
-    made = PlansPage(desk)
-    qtbot.addWidget(made)
-    made.resize(1100, 720)
+def show_page(qtbot, desk):
+    """Return a function that shows a page of the desk; pages live as long as the test."""
+    kept = []
+
+    def show():
+        made = PlansPage(desk)
+        kept.append(made)
+        qtbot.addWidget(made)
+        made.resize(1100, 720)
+        with qtbot.waitExposed(made):
+            made.show()
+        made.activateWindow()
+        return made
+
+    yield show
+    kept.clear()
+
+
+@pytest.fixture
+def page(desk, show_page):
     desk.document.new(marsh())
-    with qtbot.waitExposed(made):
-        made.show()
-    made.activateWindow()
+    made = show_page()
     settle(made)
     return made
 
@@ -372,24 +386,18 @@ def test_that_the_explainer_follows_fields_and_panels(qtbot, page, desk):
     assert desk.explain.current == "gene_diversity_kept"
 
 
-def test_that_without_a_case_the_page_says_so(qtbot, desk):
-    made = PlansPage(desk)
-    qtbot.addWidget(made)
-    made.resize(1000, 600)
-    made.show()
+def test_that_without_a_case_the_page_says_so(show_page):
+    made = show_page()
     assert made.empty.isVisibleTo(made)
     assert "No case is open" in made.empty.text()
     assert not made.list.isVisibleTo(made)
 
 
-def test_that_without_a_donor_the_reason_is_said(qtbot, desk):
+def test_that_without_a_donor_the_reason_is_said(desk, show_page):
     desk.document.new(
         marsh(donors=[], loci=[], targets=[], plans=[{"name": "No releases"}, {"name": "Try"}])
     )
-    made = PlansPage(desk)
-    qtbot.addWidget(made)
-    made.resize(1000, 600)
-    made.show()
+    made = show_page()
     made.list.choose("Try")
     assert "No donor is entered yet: add one on the Case page." in made.editor.words()
 
