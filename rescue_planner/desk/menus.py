@@ -5,17 +5,38 @@ from __future__ import annotations
 from collections.abc import Callable
 from functools import partial
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import Protocol
 
 from PySide6.QtCore import QObject
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
-from PySide6.QtWidgets import QMenu
+from PySide6.QtWidgets import QMainWindow, QMenu
 
 from rescue_planner import places
+from rescue_planner.desk.context import Desk
+from rescue_planner.desk.file_actions import FileActions
+from rescue_planner.desk.settings import Settings
 from rescue_planner.desk.view import TEXT_SCALES
 
-if TYPE_CHECKING:
-    from rescue_planner.desk.window import DeskWindow
+
+class Commands(Protocol):
+    """What the menus ask of the window."""
+
+    desk: Desk
+    files: FileActions
+    settings: Settings
+
+    def show_start(self) -> None: ...
+    def show_known(self) -> None: ...
+    def show_remarks(self) -> None: ...
+    def show_keyboard(self) -> None: ...
+    def show_about(self) -> None: ...
+    def export(self) -> None: ...
+    def close_case(self) -> None: ...
+    def close(self) -> bool: ...
+    def choose_scheme(self, scheme: str, /) -> None: ...
+    def resize_text(self, by: int, /) -> None: ...
+    def toggle_explainer(self) -> None: ...
+    def next_region(self) -> None: ...
 
 
 def action(
@@ -33,21 +54,21 @@ def action(
 class Menus(QObject):
     """Builds the menus of a window and keeps their state."""
 
-    def __init__(self, window: DeskWindow) -> None:
+    def __init__(self, window: QMainWindow, commands: Commands) -> None:
         super().__init__(window)
-        self._window = window
+        self._bar, self._window = window.menuBar(), commands
         self.needs_case: list[QAction] = []
         self._file()
         self._edit()
         self._view()
         self._help()
-        window.desk.document.state_changed.connect(self.refresh)
-        window.desk.view.changed.connect(self.refresh)
+        commands.desk.document.state_changed.connect(self.refresh)
+        commands.desk.view.changed.connect(self.refresh)
         self.refresh()
 
     def _menu(self, words: str) -> QMenu:
-        menu = QMenu(words, self._window)
-        self._window.menuBar().addMenu(menu)
+        menu = QMenu(words, self._bar)
+        self._bar.addMenu(menu)
         return menu
 
     def _file(self) -> None:

@@ -45,7 +45,7 @@ class DeskWindow(QMainWindow):
         self.setAcceptDrops(True)
         self._set_view()
         self._lay_out()
-        self.menus = Menus(self)
+        self.menus = Menus(self, self)
         self._connect()
         self._say_title()
         self._show_state()
