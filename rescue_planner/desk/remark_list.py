@@ -96,6 +96,7 @@ class RemarkDialog(QDialog):
     def __init__(self, desk: Desk, remarks: Sequence[Remark], parent: QWidget) -> None:
         super().__init__(parent)
         self._desk = desk
+        self.wanted = ""  # the path that the user wants to see
         self.setWindowTitle("Remarks on this case")
         self.resize(760, 560)
         inner = QWidget()
@@ -104,6 +105,7 @@ class RemarkDialog(QDialog):
         self._column.setSpacing(theme.UNIT)
         self.rows = [_RemarkRow(desk, remark) for remark in remarks]
         for row in self.rows:
+            row.wanted.connect(self._leave_for)
             self._column.addWidget(row)
             self._column.addWidget(rule())
         self._column.addStretch(1)
@@ -120,8 +122,30 @@ class RemarkDialog(QDialog):
         buttons.rejected.connect(self.reject)
         outer.addWidget(buttons)
 
+    def _leave_for(self, path: str) -> None:
+        self.wanted = path
+        self.accept()
+
+
+def place_in_words(case: Case, path: str) -> str:
+    """Return the place that a remark is about, as people call it."""
+    from rescue_planner.case.paths import parse_path
+    from rescue_planner.case.raw import to_raw
+    from rescue_planner.case.spoken import spoken_place
+
+    try:
+        steps = parse_path(path)
+        words = spoken_place(to_raw(case), steps)
+        if isinstance(steps[-1], int) and words.endswith(")"):
+            words = words.partition("(")[2][:-1]  # a whole plan or donor: its name says it
+    except (ValueError, KeyError, IndexError):
+        return path
+    return words[:1].upper() + words[1:]
+
 
 class _RemarkRow(QWidget):
+    wanted = Signal(str)  # path
+
     def __init__(self, desk: Desk, remark: Remark) -> None:
         super().__init__()
         self._desk, self.remark = desk, remark
@@ -134,11 +158,15 @@ class _RemarkRow(QWidget):
         self.answer.setMinimumHeight(theme.TARGET)
         self.keep = button("Answer", said=f"Answer the remark: {remark.text}")
         self.state = text("", "note")
+        self.go = button("Show", kind="link", said=f"Show where: {remark.text}")
+        self.go.setVisible(bool(remark.path))
+        self.go.clicked.connect(lambda: self.wanted.emit(remark.path))
         self.problem = text("", "problem")
         row = QHBoxLayout()
         row.setSpacing(theme.UNIT)
         row.addWidget(self.answer, 1)
         row.addWidget(self.keep)
+        row.addWidget(self.go)
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(theme.HALF)
@@ -157,7 +185,8 @@ class _RemarkRow(QWidget):
         held = next(
             (a for a in self._desk.document.case.answers if a.remark == self.remark.name), None
         )
-        place = f"{self.remark.path}  ·  " if self.remark.path else ""
+        path = self.remark.path
+        place = f"{place_in_words(self._desk.document.case, path)}  ·  " if path else ""
         said = "no answer yet" if held is None else f"answered {held.date or ''}".strip()
         self.state.setText(f"{place}{said}")
         if held is not None and not self.answer.hasFocus():

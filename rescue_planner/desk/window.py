@@ -256,17 +256,26 @@ class DeskWindow(QMainWindow):
         dialog = RemarkDialog(self.desk, found, self)
         dialog.exec()
         dialog.deleteLater()
+        if dialog.wanted:
+            self.go_to(dialog.wanted)
 
     def _to_first_problem(self) -> None:
-        first = next(iter(self.desk.problems_shown.shown), "")
-        order = sorted(self.pages, key=lambda key: key != self.current)
-        for key in order:
-            for field in self.pages[key].findChildren(QWidget):
-                if field.property("path") == first and not field.isHidden():
-                    self.show_page(key)
-                    field.setFocus(Qt.FocusReason.ShortcutFocusReason)
-                    bring_into_view(field)
-                    return
+        self.go_to(next(iter(self.desk.problems_shown.shown), ""))
+
+    def go_to(self, path: str) -> None:
+        """Show the field at `path` of the case, or the first one below it, and focus it."""
+        home = "plans" if path.startswith("plans") else "case"
+        here = self.pages[self.current]
+        if not any(one.property("path") == path for one in here.findChildren(QWidget)):
+            self.show_page(home)
+        found = [
+            one
+            for one in self.pages[self.current].findChildren(QWidget)
+            if path and str(one.property("path") or "").startswith(path) and not one.isHidden()
+        ]
+        for field in sorted(found, key=lambda one: one.property("path") != path)[:1]:
+            field.setFocus(Qt.FocusReason.ShortcutFocusReason)
+            bring_into_view(field)
 
     def next_region(self) -> None:
         """Move the focus to the next part of the window."""

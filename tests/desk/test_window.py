@@ -186,6 +186,43 @@ def test_that_remarks_are_counted_and_answered(qtbot, window) -> None:
     assert "1 answered" in window.work.remarks.text()
 
 
+@pytest.mark.parametrize(
+    ("path", "words"),
+    [
+        (NE, "Effective size (Ne)"),
+        ("plans[1]", "Plan “Pairs”"),
+        ("donors[0].fst_to_recipient", "FST to the recipient (donor “High Meadow”)"),
+        ("not a path [", "not a path ["),
+    ],
+)
+def test_that_the_place_of_a_remark_is_said_in_words(small, path, words) -> None:
+    from rescue_planner.desk.remark_list import place_in_words
+
+    assert place_in_words(small, path) == words
+
+
+def test_that_a_remark_leads_to_its_field(qtbot, window) -> None:
+    from rescue_planner.case.remarks import Remark
+    from rescue_planner.desk.remark_list import RemarkDialog
+
+    dialog = RemarkDialog(window.desk, [Remark("horizon-short", NE, "Look.")], window)
+    qtbot.addWidget(dialog)
+    dialog.show()
+    qtbot.mouseClick(dialog.rows[0].go, Qt.MouseButton.LeftButton)
+    assert dialog.wanted == NE
+    window.show_page("compare")
+    window.go_to(dialog.wanted)
+    assert window.current == "case"
+    assert _field(window, NE).edit is window.focusWidget()
+
+
+def test_that_a_place_without_a_field_leads_to_its_page(window) -> None:
+    window.go_to("plans[1]")
+    assert window.current == "plans"
+    window.go_to("recipient")
+    assert window.current == "case"
+
+
 def test_that_save_writes_the_file_and_says_so(window, small_file) -> None:
     _set(window, NE, 14)
     assert window.files.save()
