@@ -7,7 +7,7 @@ import numpy as np
 import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QGuiApplication
-from PySide6.QtWidgets import QFileDialog, QMessageBox, QWidget
+from PySide6.QtWidgets import QApplication, QFileDialog, QMessageBox, QWidget
 
 from rescue_planner.advice.targets import target_checks
 from rescue_planner.case.edits import set_value
@@ -367,3 +367,30 @@ def test_that_export_stops_when_cancelled(desk, tmp_path):
         write(wanted, control)
     assert seen == sorted(seen)
     assert not (tmp_path / "record.json").exists()
+
+
+def test_that_tab_goes_down_the_page(qtbot, page):
+    page.measures_button.setFocus()
+    wanted = [
+        page.measures_button, page.export_button, page.averages.charts, page.odds.charts,
+        page.values.edit, page.values.rows, page.values.copy_button, page.values.table,
+        page.targets,
+    ]  # fmt: skip
+    seen = []
+    for _ in wanted:
+        seen.append(QApplication.focusWidget())
+        qtbot.keyClick(seen[-1], Qt.Key.Key_Tab)
+    assert seen == wanted
+
+
+def test_that_a_chosen_panel_is_brought_into_view(qtbot, page):
+    page.resize(1000, 400)
+    qtbot.wait(20)
+    charts = page.averages.charts
+    charts.setFocus()
+    for _ in range(4):
+        qtbot.keyClick(charts, Qt.Key.Key_Down)
+    assert charts.current == 4
+    box = charts.mapFromScene(charts.panels[4].sceneBoundingRect()).boundingRect()
+    seen = charts.mapTo(page.area.viewport(), box.center())
+    assert 0 <= seen.y() <= page.area.viewport().height()

@@ -424,3 +424,17 @@ def test_that_nothing_is_cut_off_at_the_side(qtbot, page, desk, width, scale):
             right = label.mapTo(page, label.rect().topRight()).x()
             assert right <= page.width()
             assert label.width() >= label.sizeHint().width() - 1
+
+
+def test_that_nouns_agree_with_their_numbers(qtbot, page):
+    choose(page, "Every fourth year")
+
+    def sentence():
+        return " ".join(
+            label.text() for label in page.editor.blocks[0].findChildren(QLabel, "word")
+        )
+
+    assert "females and male of age" in sentence()
+    type_into(qtbot, field(page, f"{FOURTH}.who.males"), "2")
+    type_into(qtbot, field(page, f"{FOURTH}.who.females"), "1")
+    assert "female and males of age" in sentence()

@@ -164,7 +164,7 @@ class Heading(Gutter):
             row, column = divmod(i, per_row)
             x, y = first + column * each, top + row * height
             painter.setFont(self.look.font(bold=True))
-            painter.setPen(self.look.plan_colour(line.mark))
+            painter.setPen(self.look.letter_colour(line.mark))
             painter.drawText(QRectF(x, y, each, height), flags, line.letter)
             shift = metrics.horizontalAdvance("W ")
             painter.setFont(self.look.font())
@@ -258,7 +258,7 @@ class EndLetters(Gutter):
             if abs(end - y) > 2 or column:
                 painter.setPen(self.look.hair(self.look.colours.line))
                 painter.drawLine(QPointF(0.5, end), QPointF(left - 2, y))
-            painter.setPen(self.look.plan_colour(line.mark))
+            painter.setPen(self.look.letter_colour(line.mark))
             painter.setFont(self.look.font(bold=True))
             flags = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
             painter.drawText(QRectF(left, y - height / 2, wide, height), flags, line.letter)

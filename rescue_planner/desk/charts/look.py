@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import lru_cache
 
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPen
@@ -19,6 +20,7 @@ SYMBOLS = {
     "cross": "x",
     "triangle-down": "t",
 }
+TEXT_CONTRAST = 4.5
 FAINT, PLAIN, STRONG = 1.0, 1.6, 2.8  # widths of lines, in pixels
 
 
@@ -56,9 +58,45 @@ class Look:
         """Return the pen of the plan at `place` in the case."""
         return theme.plan_pen(mark(place), self.scheme, width)
 
+    def letter_colour(self, place: int) -> QColor:
+        """Return a plan's colour, as much nearer to ink as text must be to be read (4.5:1)."""
+        return QColor(_readable(mark(place), self.scheme))
+
     def plan_colour(self, place: int) -> QColor:
         """Return the colour of the plan at `place` in the case."""
         return theme.plan_colour(mark(place), self.scheme)
+
+
+def luminance(colour: QColor) -> float:
+    """Return the relative luminance of WCAG 2.2."""
+
+    def linear(part: float) -> float:
+        return part / 12.92 if part <= 0.04045 else ((part + 0.055) / 1.055) ** 2.4
+
+    red, green, blue = linear(colour.redF()), linear(colour.greenF()), linear(colour.blueF())
+    return 0.2126 * red + 0.7152 * green + 0.0722 * blue
+
+
+def contrast(one: QColor, other: QColor) -> float:
+    """Return the contrast ratio of WCAG 2.2, 1 to 21."""
+    low, high = sorted((luminance(one), luminance(other)))
+    return (high + 0.05) / (low + 0.05)
+
+
+@lru_cache(maxsize=64)
+def _readable(place: PlanMark, scheme: Scheme) -> str:
+    paper, ink = (QColor(getattr(theme.palette(scheme), name)) for name in ("paper", "ink"))
+    colour = theme.plan_colour(place, scheme)
+    for share in range(0, 101, 5):
+        mixed = QColor(
+            *(
+                round(((100 - share) * a + share * b) / 100)
+                for a, b in zip(colour.getRgb()[:3], ink.getRgb()[:3], strict=True)
+            )
+        )
+        if contrast(mixed, paper) >= TEXT_CONTRAST:
+            return mixed.name()
+    return ink.name()
 
 
 def symbol(place: PlanMark) -> str:

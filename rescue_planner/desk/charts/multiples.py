@@ -16,7 +16,7 @@ from PySide6.QtGui import (
     QPen,
     QResizeEvent,
 )
-from PySide6.QtWidgets import QFrame, QGraphicsView, QMenu, QSizePolicy, QWidget
+from PySide6.QtWidgets import QFrame, QGraphicsView, QMenu, QScrollArea, QSizePolicy, QWidget
 
 from rescue_planner.desk.charts.arrangement import Grid
 from rescue_planner.desk.charts.panel import Panel
@@ -251,9 +251,20 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         if self.shown is None or not 0 <= i < len(self.panels):
             return
         self.current = i
+        self._bring_into_view(self.panels[i])
         self._describe()
         self.viewport().update()
         self.panel_chosen.emit(self.shown.specs[i].key)
+
+    def _bring_into_view(self, panel: Panel) -> None:
+        """Scroll the page so that the chosen panel is seen."""
+        holder = self.parentWidget()
+        while holder is not None and not isinstance(holder, QScrollArea):
+            holder = holder.parentWidget()
+        if isinstance(holder, QScrollArea):
+            box = self.mapFromScene(panel.sceneBoundingRect()).boundingRect()
+            middle = self.mapTo(holder.widget(), box.center())
+            holder.ensureVisible(middle.x(), middle.y(), 0, box.height() // 2 + 8)
 
     def focusInEvent(self, event: QFocusEvent) -> None:
         super().focusInEvent(event)

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import itertools
+
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import QBoxLayout, QHBoxLayout, QScrollArea, QVBoxLayout, QWidget
@@ -49,6 +51,7 @@ class ComparePage(QWidget):
         self.exporter = Exporter(desk, self)
         self._make_words()
         self._lay_out()
+        self._chain()
         self._connect()
         self.refresh()
 
@@ -102,11 +105,22 @@ class ComparePage(QWidget):
         outer.setContentsMargins(0, 0, 0, 0)
         outer.addWidget(self.area)
 
+    def _chain(self) -> None:
+        """Let Tab go down the page."""
+        order = (
+            self.measures_button, self.chooser, self.export_button, self.averages.charts,
+            self.odds.charts, self.values.edit, self.values.rows, self.values.copy_button,
+            self.values.table, self.targets,
+        )  # fmt: skip
+        for before, after in itertools.pairwise(order):
+            QWidget.setTabOrder(before, after)
+        self.setFocusProxy(self.measures_button)
+
     def _connect(self) -> None:
         read_together([self.averages.charts, self.odds.charts])
         self.chooser.chosen_changed.connect(self._redraw)
         self.measures_button.toggled.connect(self._show_chooser)
-        self.export_button.clicked.connect(self._export)
+        self.export_button.clicked.connect(self.export)
         self._desk.document.replaced.connect(self._replaced)
         self._desk.document.changed.connect(self._case_changed)
         self._desk.live.updated.connect(self._updated)
@@ -235,7 +249,8 @@ class ComparePage(QWidget):
         shown = self.visible_plans(comparison)
         return tuple(p for p in comparison.plans if p in shown or p == NO_RELEASES)
 
-    def _export(self) -> None:
+    def export(self) -> None:
+        """Ask for a folder and write the plans and measures shown there."""
         comparison = self._desk.live.comparison
         if comparison is not None:
             self.exporter.ask(self.exported_plans(comparison), self.chooser.shown_keys())

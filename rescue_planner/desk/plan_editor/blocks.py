@@ -36,8 +36,9 @@ def lowered(name: str) -> str:
 
 def _animals(sentence: Sentence, case: Case, at: str, name: str) -> None:
     """Write who comes from where, and what becomes of them."""
-    sentence.number(f"{at}.who.females", f"{name}: females").say("females and")
-    sentence.number(f"{at}.who.males", f"{name}: males").say("males of age")
+    females, males = f"{at}.who.females", f"{at}.who.males"
+    sentence.number(females, f"{name}: females").counted(females, "female", "females").say("and")
+    sentence.number(males, f"{name}: males").counted(males, "male", "males").say("of age")
     sentence.number(f"{at}.who.age", f"{name}: age in years").say("years from")
     sentence.choice(f"{at}.donor", donor_choices(case), f"{name}: donor")
     sentence.say("– of these, a share of")
@@ -66,8 +67,9 @@ class ReleaseBlock(Block):
         line = self.sentence
         line.say("In").number(f"{at}.when.first_year", f"{name}: first year")
         line.say("and then every").number(f"{at}.when.every_years", f"{name}: years between")
-        line.say("years,").number(f"{at}.when.times", f"{name}: how many times")
-        line.say("times in all: release")
+        line.counted(f"{at}.when.every_years", "year,", "years,")
+        line.number(f"{at}.when.times", f"{name}: how many times")
+        line.counted(f"{at}.when.times", "time", "times").say("in all: release")
         _animals(line, case, at, name)
         self.duplicate = self.act("Duplicate", f"Duplicate release {index + 1}")
         self.remove = self.act("Remove", f"Remove release {index + 1}")

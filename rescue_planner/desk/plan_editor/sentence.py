@@ -90,6 +90,7 @@ class Sentence(QWidget):
         self._desk = desk
         self.fields: dict[str, NumberField] = {}
         self.choices: dict[str, Choice] = {}
+        self._counted: list[tuple[QLabel, str, str, str]] = []
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
         outer.setSpacing(2)
@@ -98,7 +99,7 @@ class Sentence(QWidget):
         self.refused = text("", "problem")
         self.refused.hide()
         outer.addWidget(self.refused)
-        desk.document.changed.connect(self._clear_refusal)
+        desk.document.changed.connect(self._case_changed)
 
     def say(self, *phrases: str) -> Sentence:
         """Add words; lines may break between any two."""
@@ -108,6 +109,22 @@ class Sentence(QWidget):
             label.setObjectName("word")
             self._flow.addWidget(label)
         return self
+
+    def counted(self, path: str, one: str, many: str) -> Sentence:
+        """Add a noun that follows the number at `path`: `1 female`, `2 females`."""
+        self.say(many)
+        item = self._flow.itemAt(self._flow.count() - 1)
+        label = item.widget() if item is not None else None
+        assert isinstance(label, QLabel)
+        self._counted.append((label, path, one, many))
+        self._agree()
+        return self
+
+    def _agree(self) -> None:
+        document = self._desk.document
+        for label, path, one, many in self._counted:
+            held = value_at(document.case, path) if document.has_case else None
+            label.setText(one if held is not None and held.best == 1 else many)
 
     def number(self, path: str, name: str) -> Sentence:
         """Add a number; `name` says what it is to a screen reader."""
@@ -137,8 +154,9 @@ class Sentence(QWidget):
         self.refused.setText("⚠ " + sentence_of(problems) if problems else "")
         self.refused.setVisible(bool(problems))
 
-    def _clear_refusal(self, _case: object) -> None:
+    def _case_changed(self, _case: object) -> None:
         self.say_problems(())
+        self._agree()
 
 
 class Block(QWidget):

@@ -5,9 +5,9 @@ import itertools
 import numpy as np
 import pytest
 from PySide6.QtCore import QPoint, Qt
-from PySide6.QtGui import QGuiApplication
+from PySide6.QtGui import QColor, QGuiApplication
 
-from rescue_planner.desk.charts.look import Look
+from rescue_planner.desk.charts.look import Look, contrast
 from rescue_planner.desk.charts.shown import PanelSpec, specs
 from rescue_planner.projection import reading
 from rescue_planner.projection.compare import compare
@@ -250,3 +250,19 @@ def test_that_a_strong_plan_has_the_widest_line(draw):
     charts = draw(strong="Trickle")
     widths = {p: x.curve.opts["pen"].widthF() for p, x in charts.panels[0].plans.items()}
     assert widths["Trickle"] == max(widths.values()) > widths["No releases"]
+
+
+@pytest.mark.parametrize("scheme", ["light", "dark"])
+def test_that_letters_are_readable_and_lines_are_seen(scheme):
+    look = Look(scheme=scheme)
+    paper = QColor(look.colours.paper)
+    for place in range(12):
+        assert contrast(look.letter_colour(place), paper) >= 4.5
+        assert contrast(look.plan_colour(place), paper) >= 3.0
+
+
+def test_that_contrast_is_that_of_the_guideline():
+    # W3C, WCAG 2.2: black on white is 21:1; #767676 on white is the usual 4.54:1 example
+    white = QColor("#ffffff")
+    assert contrast(QColor("#000000"), white) == pytest.approx(21.0)
+    assert contrast(QColor("#767676"), white) == pytest.approx(4.54, abs=0.005)
