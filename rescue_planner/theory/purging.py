@@ -53,8 +53,9 @@ def purged_inbreeding(ne: Numbers, coefficient: Numbers, generations: int) -> Pu
     Returns
     -------
     PurgedInbreeding
-        ln W_t = ln W_0 - B g_t. Within a few per cent for t up to 5 or small d; too pessimistic for
-        strong alleles later (a factor of 2 at N = 25, lethals, t = 20): `expressed_load_exact`.
+        ln W_t = ln W_0 - B g_t. A quick estimate that errs on the dark side: for lethals at N = 25
+        it is 1 % above the exact chain at t = 2, 19 % at 5, more than double at 20; for s = 0.02
+        never more than 6 %. Where purging decides, use `expressed_load_exact` or single loci.
 
     Raises
     ------
