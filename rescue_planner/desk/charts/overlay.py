@@ -185,12 +185,8 @@ class Overlay(Gutter):
                 for top in (y + reach, y - tall - reach, y + 1.5 * tall, y - 2.5 * tall)
                 for left in (x - wide, x - wide / 2, x)
             ]
-            self._write(
-                painter,
-                words,
-                [(x + 2 * GAP, y - tall / 2), *places],
-                self.look.letter_colour(line.mark).name(),
-            )
+            places.insert(0, (x + 2 * GAP, y - tall / 2))
+            self._write(painter, words, places, self.look.letter_colour(line.mark).name())
 
     def _paint_read_out(self, painter: QPainter, x: float) -> None:
         assert self.picture is not None

@@ -107,7 +107,7 @@ class ComparePage(QWidget):
 
     def _chain(self) -> None:
         """Let Tab go down the page."""
-        order = (
+        order: tuple[QWidget, ...] = (
             self.measures_button, self.chooser, self.export_button, self.averages.charts,
             self.odds.charts, self.values.edit, self.values.rows, self.values.copy_button,
             self.values.table, self.targets,
