@@ -52,7 +52,8 @@ def animals_to_see(p: Numbers, chance: Numbers, inbreeding: Numbers = 0.0) -> Fl
         Animals, of a large population.
     """
     exact = founders_needed(p, chance, inbreeding)
-    return np.asarray(np.ceil(exact - 1e-9))[()]  # whole numbers stay in spite of rounding
+    whole = floats(np.ceil(exact - 1e-9))  # a whole number stays itself in spite of rounding
+    return np.where(whole > 0.0, whole, 0.0)[()]
 
 
 def chance_to_see_carriers(animals: Numbers, carriers: Numbers, sampled: Numbers) -> FloatArray:
@@ -112,9 +113,9 @@ def se_over_loci(values: Numbers) -> FloatArray:
     Holds sampling, drift history and differences among loci together; L at least 2.
     """
     x = floats(values)
-    loci = x.shape[-1]
+    loci = float(x.shape[-1])
     away = x - np.mean(x, axis=-1, keepdims=True)
-    return np.sqrt(total(away**2) / (loci * (loci - 1)))
+    return np.sqrt(total(away**2) / (loci * (loci - 1.0)))
 
 
 def observed_heterozygosity_variance(heterozygosity: Numbers, animals: Numbers) -> FloatArray:

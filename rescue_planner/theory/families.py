@@ -40,7 +40,8 @@ class SexFamilies(NamedTuple):
 def families(young: Numbers) -> Families:
     """Return number, mean and variance (divisor N) of the young of each adult; (..., N) -> (...).
 
-    Adults that left none must stand there as 0: leaving them out makes the size far too high.
+    Adults that left none stand there as 0: the variance among breeders alone, put beside the number
+    of all adults, gives a size that is too high. Only `inbreeding_size` is the same without them.
     """
     k = floats(young)
     count = np.full(k.shape[:-1], float(k.shape[-1]))[()]
@@ -118,12 +119,13 @@ def two_sexes_variance_size(fathers: SexFamilies, mothers: SexFamilies) -> Float
     Parameters
     ----------
     fathers, mothers : SexFamilies
-        Of the *parents'* generation; variances with divisor N - 1; means above 0.
+        Of the *parents'* generation; variances and covariance with divisor N; means above 0.
 
     Returns
     -------
     (...) array
-        Animals. Source: Crow & Denniston 1988, abstract; form from memory.
+        Animals. Source: Crow & Denniston 1988 (form from its abstract). Each sex's part is exact
+        for copies arranged at random among its parents; derived.
     """
     share: FloatArray = np.zeros(())
     for sex in (fathers, mothers):

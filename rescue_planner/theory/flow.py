@@ -139,6 +139,32 @@ def pulse_schedule_ancestry(shares: Numbers) -> FloatArray:
     return 1.0 - np.cumprod(1.0 - floats(shares), axis=-1, dtype=np.float64)
 
 
+def generations_to_ancestry(ancestry: Numbers, pulse: Numbers, then: Numbers) -> FloatArray:
+    """Return when donor ancestry reaches a level after a first pulse and a steady flow.
+
+    t = 1 + ln[(1-D) / (1-m1)] / ln(1-m2): the pulse is generation 1, so the steady flow has had
+    t - 1 generations.
+
+    Parameters
+    ----------
+    ancestry : (...) array
+        D, share of donor ancestry, below 1.
+    pulse, then : (...) array
+        m1 of the first generation, m2 of every later one, shares of gene copies below 1.
+
+    Returns
+    -------
+    (...) array
+        Generations, a real number; 1 where the pulse alone is enough, inf where nothing follows a
+        pulse that isn't.
+    """
+    first, later = floats(pulse), floats(then)
+    left = np.log1p(-floats(ancestry)) - np.log1p(-first)
+    flows = later > 0.0
+    after = np.where(flows, left / np.log1p(-np.where(flows, later, 0.5)), np.inf)
+    return np.where(left >= 0.0, 1.0, 1.0 + after)[()]
+
+
 def fst_equilibrium(ne: Numbers, m: Numbers) -> FloatArray:
     """Return the exact long-run FST of a recipient under steady flow from a constant donor.
 

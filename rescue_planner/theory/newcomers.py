@@ -26,6 +26,13 @@ class Exchange(NamedTuple):
     between: FloatArray
 
 
+def _whole(newcomers: Numbers) -> FloatArray:
+    n = floats(newcomers)
+    if np.any((n < 0.0) | (n != np.floor(n))):
+        raise ValueError("newcomers have to be a whole number: half an animal is a rate of flow")
+    return n
+
+
 def _pairs(copies: FloatArray) -> FloatArray:
     return 0.5 * copies * (copies - 1.0)
 
@@ -50,9 +57,14 @@ def both_resident(residents: Numbers, newcomers: Numbers) -> FloatArray:
     -------
     (...) array
         Probability.
+
+    Raises
+    ------
+    ValueError
+        If a number of newcomers isn't whole: then `identity.with_flow_after` takes the rate.
     """
     own = 2.0 * floats(residents)
-    return _pairs(own) / _pairs(own + 2.0 * floats(newcomers))
+    return _pairs(own) / _pairs(own + 2.0 * _whole(newcomers))
 
 
 def both_resident_random(adults: Numbers, mean_newcomers: Numbers) -> FloatArray:
@@ -84,6 +96,11 @@ def identity_after(
     -------
     (...) array
         Probability.
+
+    Raises
+    ------
+    ValueError
+        As in `both_resident`.
     """
     left = retained(parents)
     return both_resident(residents, newcomers) * (1.0 - left + left * floats(identity))
@@ -101,6 +118,11 @@ def identity_settled(residents: Numbers, newcomers: Numbers) -> FloatArray:
     -------
     (...) array
         Probability; 1 without newcomers.
+
+    Raises
+    ------
+    ValueError
+        As in `both_resident`.
     """
     copies = 2.0 * (floats(residents) + floats(newcomers))
     both = both_resident(residents, newcomers)
@@ -123,6 +145,11 @@ def after_newcomers(
     -------
     Exchange
         Counted among the recipient's adults, newcomers included.
+
+    Raises
+    ------
+    ValueError
+        As in `both_resident`.
     """
     return _joined(before, floats(before.donor), retained(parents), residents, newcomers)
 
@@ -153,6 +180,11 @@ def after_removal(
     -------
     Exchange
         Of the recipient's adults and the donor's.
+
+    Raises
+    ------
+    ValueError
+        As in `both_resident`.
     """
     donor = retained(donor_parents) * floats(before.donor)
     return _joined(before, donor, retained(parents), residents, newcomers)
@@ -161,7 +193,7 @@ def after_removal(
 def _joined(
     before: Exchange, donor: FloatArray, left: FloatArray, residents: Numbers, newcomers: Numbers
 ) -> Exchange:
-    own, came = 2.0 * floats(residents), 2.0 * floats(newcomers)
+    own, came = 2.0 * floats(residents), 2.0 * _whole(newcomers)
     whole = own + came
     unlike = _pairs(own) * left * floats(before.recipient)
     unlike = unlike + own * came * floats(before.between) + _pairs(came) * donor
