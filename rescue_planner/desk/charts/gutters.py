@@ -8,7 +8,7 @@ from PySide6.QtWidgets import QGraphicsWidget, QStyleOptionGraphicsItem, QWidget
 
 from rescue_planner.desk import theme
 from rescue_planner.desk.charts.look import Look
-from rescue_planner.projection.picture import Picture
+from rescue_planner.projection.picture import Line, Picture
 from rescue_planner.projection.placing import place_labels, tick_texts
 
 GAP = theme.HALF
@@ -120,11 +120,17 @@ class Heading(Gutter):
         each = metrics.horizontalAdvance(f"W {self.picture.widest}") + 2.5 * GAP
         return each, metrics.horizontalAdvance("2088.8") + 2 * GAP
 
+    def cells(self) -> tuple[tuple[Line, str], ...]:
+        """Return each plan's line with its value at the read-out."""
+        if self.picture is None:
+            return ()
+        return tuple((line, self.picture.text_at(line, self.t)) for line in self.picture.lines)
+
     def texts(self) -> tuple[str, ...]:
         """Return what the read-out says, plan by plan."""
         if self.picture is None:
             return ()
-        values = (f"{x.letter} {self.picture.text_at(x, self.t)}" for x in self.picture.lines)
+        values = (f"{line.letter} {text}" for line, text in self.cells())
         bands = self.picture.bands_at(self.t)
         return (*values, *bands)
 
@@ -160,7 +166,7 @@ class Heading(Gutter):
         per_row = max(1, int((width - first) / each))
         flags = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
         painter.drawText(QRectF(0, top, first, height), flags, self.when)
-        for i, line in enumerate(self.picture.lines):
+        for i, (line, text) in enumerate(self.cells()):
             row, column = divmod(i, per_row)
             x, y = first + column * each, top + row * height
             painter.setFont(self.look.font(bold=True))
@@ -169,7 +175,6 @@ class Heading(Gutter):
             shift = metrics.horizontalAdvance("W ")
             painter.setFont(self.look.font())
             painter.setPen(QColor(self.look.colours.ink))
-            text = self.picture.text_at(line, self.t)
             painter.drawText(QRectF(x + shift, y, each, height), flags, text)
         rows = -(-len(self.picture.lines) // per_row)
         painter.setPen(QColor(self.look.colours.soft))

@@ -87,12 +87,10 @@ def contrast(one: QColor, other: QColor) -> float:
 def _readable(place: PlanMark, scheme: Scheme) -> str:
     paper, ink = (QColor(getattr(theme.palette(scheme), name)) for name in ("paper", "ink"))
     colour = theme.plan_colour(place, scheme)
+    parts = [(a.red(), a.green(), a.blue()) for a in (colour, ink)]
     for share in range(0, 101, 5):
         mixed = QColor(
-            *(
-                round(((100 - share) * a + share * b) / 100)
-                for a, b in zip(colour.getRgb()[:3], ink.getRgb()[:3], strict=True)
-            )
+            *(round(((100 - share) * a + share * b) / 100) for a, b in zip(*parts, strict=True))
         )
         if contrast(mixed, paper) >= TEXT_CONTRAST:
             return mixed.name()
