@@ -106,11 +106,10 @@ ROWS = [
 ]
 
 
-@pytest.mark.parametrize(
-    ("ne", "t", "n", "change", "sampling", "drift", "between", "loci", "floor"), ROWS
-)
-def test_that_a_fall_takes_so_many_loci(ne, t, n, change, sampling, drift, between, loci, floor):
+@pytest.mark.parametrize("row", ROWS)
+def test_that_a_fall_takes_so_many_loci(row):
     """Derived, ten decimals. More animals cannot go below the floor that drift sets."""
+    ne, t, n, change, sampling, drift, between, loci, floor = row
     fall = detection.fall_of_diversity(FIVE, ne, t, n)
     stated = [change, sampling, drift, between]
     assert_allclose(fall, stated, rtol=0, atol=5.1e-11)

@@ -1,4 +1,4 @@
-"""Where selection rests and where it is fastest. Derived; Fisher 1922, Haldane 1924, from memory."""
+"""Where selection rests and where it is fastest. Derived; Fisher 1922, Haldane 1924 from memory."""
 
 import numpy as np
 import pytest

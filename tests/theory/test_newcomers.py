@@ -151,7 +151,7 @@ def test_that_two_generations_agree_with_a_joint_chain():
 )
 def test_that_diversities_stay_probabilities(own, came, h, d, b):
     after = newcomers.after_removal(Exchange(h, d, b), own + came, own, came, 5)
-    assert 0 <= min(after)
+    assert min(after) >= 0
     assert max(after) <= 1 + 1e-12
 
 

@@ -35,8 +35,9 @@ def settled(n, forces, w):
     return np.linalg.lstsq(equations, np.append(np.zeros(copies + 1), 1.0), rcond=None)[0]
 
 
-@pytest.mark.parametrize(("n", "m", "donor", "s", "h", "weak", "powered"), ROWS)
-def test_that_flow_selection_and_drift_settle_here(n, m, donor, s, h, weak, powered):
+@pytest.mark.parametrize("row", ROWS)
+def test_that_flow_selection_and_drift_settle_here(row):
+    n, m, donor, s, h, weak, powered = row
     forces = Forces(n, m, donor)
     assert_allclose(stationary.with_selection(forces, s, h), powered, rtol=DIGITS)
     found = stationary.with_selection(forces, s, h, fitness_to_the_power=False)
