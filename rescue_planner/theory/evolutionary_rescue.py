@@ -12,6 +12,17 @@ import numpy as np
 from rescue_planner.theory.arrays import FloatArray, Numbers, floats
 
 
+class Peak(NamedTuple):
+    """The fitness peak: growth per *generation* of an animal at the optimum, V_P, w2; each (...).
+
+    Variances in phenotypic SD squared at the start.
+    """
+
+    growth: Numbers
+    phenotypic_variance: Numbers = 1.0
+    width2: Numbers = 9.0
+
+
 class AbruptShift(NamedTuple):
     """Course after an abrupt shift, generations 0..t on the last axis (..., t + 1)."""
 
@@ -19,27 +30,24 @@ class AbruptShift(NamedTuple):
     lag: FloatArray
 
 
-def lag_kept(heritability: Numbers, phenotypic_variance: Numbers, width2: Numbers) -> FloatArray:
+def lag_kept(heritability: Numbers, peak: Peak) -> FloatArray:
     """Return k = (w2 + (1 - h2) V_P) / (w2 + V_P), the share of the lag left after a generation."""
-    variance, w2 = floats(phenotypic_variance), floats(width2)
+    variance, w2 = floats(peak.phenotypic_variance), floats(peak.width2)
     return (w2 + (1.0 - floats(heritability)) * variance) / (w2 + variance)
 
 
-def _log_best(most: Numbers, phenotypic_variance: Numbers, width2: Numbers) -> FloatArray:
-    w2 = floats(width2)
-    best = np.log(floats(most)) - 0.5 * np.log1p(floats(phenotypic_variance) / w2)
-    return np.asarray(best)
+def _log_best(peak: Peak) -> FloatArray:
+    """Return ln W, log growth of a population whose mean is at the optimum."""
+    load = 0.5 * np.log1p(floats(peak.phenotypic_variance) / floats(peak.width2))
+    return np.asarray(np.log(floats(peak.growth)) - load)
 
 
-def course_after_shift(  # noqa: PLR0913
-    start: Numbers,
-    lag: Numbers,
-    heritability: Numbers,
-    most: Numbers,
-    generations: int,
-    *,
-    phenotypic_variance: Numbers = 1.0,
-    width2: Numbers = 9.0,
+def _spread(peak: Peak) -> FloatArray:
+    return floats(peak.width2) + floats(peak.phenotypic_variance)
+
+
+def course_after_shift(
+    start: Numbers, lag: Numbers, heritability: Numbers, peak: Peak, generations: int
 ) -> AbruptShift:
     """Return log numbers and the lag after an abrupt shift of the optimum.
 
@@ -51,12 +59,10 @@ def course_after_shift(  # noqa: PLR0913
         N_0, animals; d_0, phenotypic SD.
     heritability : (...) array
         h2, above 0.
-    most : (...) array
-        Growth per *generation* of animals at the optimum without variance, W_max.
+    peak : Peak
+        W_max, V_P and w2.
     generations : int
         t.
-    phenotypic_variance, width2 : (...) array
-        V_P and w2.
 
     Returns
     -------
@@ -64,27 +70,23 @@ def course_after_shift(  # noqa: PLR0913
         On t = 0..`generations`.
     """
     t = np.arange(generations + 1.0)
-    k = lag_kept(heritability, phenotypic_variance, width2)[..., np.newaxis]
-    best = _log_best(most, phenotypic_variance, width2)[..., np.newaxis]
+    k = lag_kept(heritability, peak)[..., np.newaxis]
+    best = _log_best(peak)[..., np.newaxis]
     d0 = floats(lag)[..., np.newaxis]
-    spread = (floats(width2) + floats(phenotypic_variance))[..., np.newaxis]
+    spread = _spread(peak)[..., np.newaxis]
     lost = d0**2 / (2.0 * spread) * (1.0 - k ** (2.0 * t)) / (1.0 - k**2)
     return AbruptShift(np.log(floats(start))[..., np.newaxis] + t * best - lost, k**t * d0)
 
 
-def generations_to_growth(
-    lag: Numbers,
-    heritability: Numbers,
-    most: Numbers,
-    phenotypic_variance: Numbers = 1.0,
-    width2: Numbers = 9.0,
-) -> FloatArray:
+def generations_to_growth(lag: Numbers, heritability: Numbers, peak: Peak) -> FloatArray:
     """Return when numbers begin to rise again: ln[2 (w2+V_P) ln W / d_0^2] / (2 ln k).
 
     Parameters
     ----------
-    lag, heritability, most, phenotypic_variance, width2 : (...) array
+    lag, heritability : (...) array
         As in `course_after_shift`.
+    peak : Peak
+        W_max, V_P and w2.
 
     Returns
     -------
@@ -92,11 +94,9 @@ def generations_to_growth(
         Generations; 0 where numbers never fall, inf where even the best type declines or nothing
         is inherited.
     """
-    best = _log_best(most, phenotypic_variance, width2)
-    spread = floats(width2) + floats(phenotypic_variance)
-    enough = 2.0 * spread * best
+    enough = 2.0 * _spread(peak) * _log_best(peak)
     d2 = floats(lag) ** 2
-    k = lag_kept(heritability, phenotypic_variance, width2)
+    k = lag_kept(heritability, peak)
     with np.errstate(divide="ignore", invalid="ignore"):
         time = np.log(enough / d2) / (2.0 * np.log(k))
     never = (enough <= 0.0) | ((k >= 1.0) & (d2 >= enough))

@@ -69,7 +69,7 @@ def logit_normal_parameters(mean: float, sd: float) -> tuple[float, float]:
     Parameters
     ----------
     mean, sd : float
-        Of the rate; 0 < mean < 1, 0 < sd < `largest_sd`, not near it.
+        Of the rate; 0 < mean < 1, 0 < sd up to about 0.7 of `largest_sd`.
 
     Returns
     -------
