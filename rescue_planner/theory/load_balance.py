@@ -12,6 +12,8 @@ import numpy as np
 from scipy.special import beta, roots_jacobi
 
 from rescue_planner.theory.arrays import FloatArray, Numbers, floats
+from rescue_planner.theory.balance import harmful_frequency
+from rescue_planner.theory.load import Load, population_load
 
 _NODES = 400
 
@@ -24,28 +26,23 @@ class StationaryLoad(NamedTuple):
     masked: FloatArray
 
 
-def equilibrium_frequency(u: Numbers, s: Numbers, h: Numbers) -> FloatArray:
-    """Return the exact frequency at mutation-selection balance in a very large population.
+def load_at_balance(u: Numbers, s: Numbers, h: Numbers) -> Load:
+    """Return the load of a very large population at mutation-selection balance.
 
-    Positive root of s (1-2h) q^2 + h s (1+u) q - u = 0: selection, then mutation, none back.
-    About u/(h s) for h s well above sqrt(u s), about sqrt(u/s) for a recessive.
+    `load.population_load` at `balance.harmful_frequency`. Masked about u (1/h - 2) a locus for h s
+    well above sqrt(u s), about sqrt(u s) for a recessive.
 
     Parameters
     ----------
-    u, s, h : (...) array
-        Mutation rate, selection against the homozygote (above 0), dominance (0 to 1).
+    u, s, h : (..., L) array
+        Mutation rate per gene copy, selection against the homozygote, dominance, at each locus.
 
     Returns
     -------
-    (...) array
-        0 to 1; 1 where mutation is stronger than selection.
+    Load
+        Each (...), summed over loci.
     """
-    u_, s_, h_ = floats(u), floats(s), floats(h)
-    slope = h_ * s_ * (1.0 + u_)
-    inside = np.maximum(0.0, slope**2 + 4.0 * s_ * (1.0 - 2.0 * h_) * u_)
-    bottom = slope + np.sqrt(inside)
-    q = 2.0 * u_ / np.where(bottom == 0.0, 1.0, bottom)
-    return np.where(u_ >= s_, 1.0, np.minimum(1.0, q))[()]
+    return population_load(harmful_frequency(u, s, h), s, h)
 
 
 def load_from_mutation(genomic_rate: Numbers, h: Numbers) -> FloatArray:

@@ -55,7 +55,7 @@ def load_from_mutation_over_effects(
 
     E[1/(2h)] = (1 - k mean/shape)^(-shape) only for k mean/shape below 1. At or above it the
     shortcut diverges: the strong, nearly recessive tail has no balance u/(h s). Then cut s off at 1
-    and use `load_balance.equilibrium_frequency`.
+    and use `load_balance.load_at_balance`.
 
     Parameters
     ----------
