@@ -5,8 +5,8 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QApplication, QLabel, QWidget
+from PySide6.QtCore import QEvent, Qt
+from PySide6.QtWidgets import QAbstractButton, QApplication, QLabel, QWidget
 
 from rescue_planner.case.problems import read_case
 from rescue_planner.desk.pages.plans import PlansPage
@@ -64,6 +64,12 @@ def field(page, path):
     for block in page.editor.blocks:
         fields.update(block.sentence.fields)
     return fields[path]
+
+
+def press(page, words):
+    made = next(b for b in page.editor.findChildren(QAbstractButton) if b.text() == words)
+    made.click()
+    QApplication.sendPostedEvents(None, QEvent.Type.DeferredDelete.value)
 
 
 def type_into(qtbot, made, text):
@@ -161,7 +167,7 @@ def test_that_a_release_is_added_duplicated_and_removed(qtbot, page, desk):
     assert plan.releases[1] == plan.releases[0]
     assert sum(isinstance(block, ReleaseBlock) for block in page.editor.blocks) == 2
     page.editor.blocks[1].remove.click()
-    page.editor._add_release()
+    page.editor.add_buttons[ReleaseBlock].click()
     plan = desk.document.case.plan("Every fourth year")
     assert len(plan.releases) == 2
     assert plan.releases[1].donor == "North Fell"
@@ -208,16 +214,16 @@ def test_that_steady_flow_shows_m_and_ne_m(qtbot, page, desk):
     assert "Ne·m = 1.78 (Ne 32)" in block.comes_to.text()
     block.remove.click()
     assert desk.document.case.plan("Trickle").steady == ()
-    page.editor._add_steady()
+    page.editor.add_buttons[SteadyBlock].click()
     assert desk.document.case.plan("Trickle").steady[0].donor == "North Fell"
 
 
 def test_that_rules_and_other_actions_are_added_and_removed(page, desk):
     choose(page, "Trickle")
     for _ in range(2):
-        page.editor._add_stop()
-    page.editor._add_trigger()
-    page.editor._add_action()
+        press(page, "Add stop rule")
+    press(page, "Add release rule")
+    press(page, "Add other action")
     plan = desk.document.case.plan("Trickle")
     assert [rule.name for rule in plan.rules] == [
         "ancestry ceiling", "ancestry ceiling 2", "another wave",
@@ -438,3 +444,18 @@ def test_that_nouns_agree_with_their_numbers(qtbot, page):
     type_into(qtbot, field(page, f"{FOURTH}.who.males"), "2")
     type_into(qtbot, field(page, f"{FOURTH}.who.females"), "1")
     assert "female and males of age" in sentence()
+
+
+def test_that_the_cursor_goes_to_a_new_part_and_stays_near_a_removed_one(page):
+    choose(page, "Trickle")
+    press(page, "Add stop rule")
+    assert QApplication.focusWidget().accessibleName().startswith("Rule “ancestry ceiling”: acts")
+    press(page, "Add other action")
+    assert QApplication.focusWidget() is page.editor.blocks[-1].what.edit
+    page.editor.blocks[-1].remove.click()
+    assert QApplication.focusWidget().text() == "Add other action"
+    choose(page, "Every fourth year")
+    page.editor.blocks[0].duplicate.click()
+    assert QApplication.focusWidget().accessibleName().startswith("Release 2: first year")
+    page.editor.blocks[1].remove.click()
+    assert QApplication.focusWidget().accessibleName() == "Remove release 1"

@@ -257,16 +257,20 @@ class EndLetters(Gutter):
         metrics = QFontMetricsF(self.look.font(bold=True))
         wide, height = metrics.horizontalAdvance("W") + GAP, self.look.line_height
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        for i, end, y, column in self.places():
-            line = self.picture.lines[i]
-            left = 2.5 * GAP + column * wide
+        places = self.places()
+        painter.setPen(self.look.hair(self.look.colours.line))
+        for _, end, y, column in places:
             if abs(end - y) > 2 or column:
-                painter.setPen(self.look.hair(self.look.colours.line))
+                left = 2.5 * GAP + column * wide
                 painter.drawLine(QPointF(0.5, end), QPointF(left - 2, y))
+        painter.setFont(self.look.font(bold=True))
+        flags = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
+        for i, _, y, column in places:
+            line = self.picture.lines[i]
+            box = QRectF(2.5 * GAP + column * wide, y - height / 2, wide - GAP, height)
+            painter.fillRect(box.adjusted(-1, 2, 1, -2), QColor(self.look.colours.paper))
             painter.setPen(self.look.letter_colour(line.mark))
-            painter.setFont(self.look.font(bold=True))
-            flags = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
-            painter.drawText(QRectF(left, y - height / 2, wide, height), flags, line.letter)
+            painter.drawText(box.adjusted(0, 0, GAP, 0), flags, line.letter)
 
 
 class TimeTicks(Gutter):

@@ -30,6 +30,12 @@ TRUST = (
 )
 
 
+BANDS = (
+    "Bands: among 100 populations like this one, the frequency is in the wide band in 90 and in "
+    "the narrow band in 50."
+)
+
+
 def _of_locus(key: str) -> bool:
     return split(key)[0] in (*LOCUS, "allele_fixed")
 
@@ -223,7 +229,10 @@ class ComparePage(QWidget):
             (self.odds_depth, [key for key in shown if _of_locus(key)]),
         ):
             depths = depths_shown(comparison, keys)
-            label.setText("\n".join(depth_words(case, depth) for depth in depths))
+            words = [depth_words(case, depth) for depth in depths]
+            if label is self.odds_depth and "exact" in depths:
+                words.append(BANDS)
+            label.setText("\n".join(words))
             label.setVisible(bool(depths))
         loci = any(_of_locus(key) for key in shown)
         self.odds.setVisible(loci)

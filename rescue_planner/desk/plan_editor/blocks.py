@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from PySide6.QtWidgets import QWidget
+
 from rescue_planner.case.document import Case
 from rescue_planner.case.measures import keys, measure_of, title
 from rescue_planner.case.plans import Plan, Rule
@@ -165,6 +167,10 @@ class ActionBlock(Block):
         line.say("at a cost of").number(f"{at}.cost", f"{name}: cost")
         line.say(f"{case.currency or 'units of money'}, once.")
         self.remove = self.act("Remove", f"Remove other action {index + 1}")
+
+    def first(self) -> QWidget:
+        """Return what is edited first: the description."""
+        return self.what.edit
 
     def refresh(self, case: Case, plan: Plan) -> None:
         """Say what the live depths do with it."""

@@ -2,30 +2,27 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator
+from collections.abc import Callable
 from typing import Any
 
 from PySide6.QtCore import Qt, Signal
-from PySide6.QtWidgets import QHBoxLayout, QLabel, QLayout, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QHBoxLayout, QLabel, QVBoxLayout, QWidget
 
 from rescue_planner.case.document import Case
 from rescue_planner.case.edits import (
     Edit,
-    add_action,
-    add_release,
-    add_rule,
     remove_action,
     remove_release,
     remove_rule,
     remove_steady,
-    set_steady,
 )
-from rescue_planner.case.plans import NO_RELEASES, Plan, Release
+from rescue_planner.case.plans import NO_RELEASES, Plan
 from rescue_planner.case.problems import Problem
 from rescue_planner.desk import theme
 from rescue_planner.desk.compare.values import CopyingTable
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.fields import sentence_of
+from rescue_planner.desk.plan_editor import new_parts
 from rescue_planner.desk.plan_editor.at_hand import AtHand
 from rescue_planner.desk.plan_editor.blocks import (
     ActionBlock,
@@ -35,9 +32,12 @@ from rescue_planner.desk.plan_editor.blocks import (
 )
 from rescue_planner.desk.plan_editor.events import EventModel
 from rescue_planner.desk.plan_editor.sentence import Block
+from rescue_planner.desk.plan_editor.tab_order import reached
 from rescue_planner.desk.widgets import button, rule, text
 from rescue_planner.projection.plan_reading import limit_sentences
 
+MakePart = Callable[[Case, str], Edit]
+AddButton = tuple[type[Block], str, MakePart, str]  # kind, words, what it adds, reason why not
 NO_DONOR = "No donor is entered yet: add one on the Case page."
 NOTHING_HERE = (
     "“No releases” is the plan of leaving things as they are. Every other plan is compared with "
@@ -61,6 +61,7 @@ class PlanEditor(QWidget):
         self._plan = NO_RELEASES
         self._built: tuple[Any, ...] | None = None
         self.blocks: list[ReleaseBlock | SteadyBlock | RuleBlock | ActionBlock] = []
+        self.add_buttons: dict[type[Block], QWidget] = {}
         self.at_hand: AtHand | None = None
         self.events = EventModel(desk, self)
         self.heading = text("", "title")
@@ -125,7 +126,7 @@ class PlanEditor(QWidget):
         column = QVBoxLayout(body)
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(theme.HALF)
-        self.blocks = []
+        self.blocks, self.add_buttons = [], {}
         self.at_hand = AtHand(self._desk, case, index)
         column.addWidget(self.at_hand)
         if plan.name == NO_RELEASES:
@@ -137,19 +138,20 @@ class PlanEditor(QWidget):
             self._build_actions(column, case, plan, index)
         self._replace_body(body)
 
-    def _section(self, column: QVBoxLayout, words: str, *buttons: tuple[str, Any, str]) -> None:
-        """Add a rule, a heading, and buttons as (words, what to do, reason why not)."""
+    def _section(self, column: QVBoxLayout, words: str, *buttons: AddButton) -> None:
+        """Add a rule, a heading, and buttons that add a part."""
         column.addWidget(rule())
         row = QHBoxLayout()
         row.setSpacing(theme.UNIT)
         row.addWidget(text(words, "section", wrap=False))
         row.addStretch(1)
-        for label, do, why_not in buttons:
+        for kind, label, make, why_not in buttons:
             made = button(label, kind="link")
             made.setEnabled(not why_not)
             made.setToolTip(why_not)
             made.setAccessibleDescription(why_not)
-            made.clicked.connect(do)
+            made.clicked.connect(_Do(self._add, make, kind))
+            self.add_buttons.setdefault(kind, made)
             row.addWidget(made)
         column.addLayout(row)
 
@@ -159,12 +161,14 @@ class PlanEditor(QWidget):
 
     def _build_releases(self, column: QVBoxLayout, case: Case, plan: Plan, index: int) -> None:
         why_not = "" if case.donors else NO_DONOR
-        self._section(column, "Releases", ("Add release", self._add_release, why_not))
+        self._section(
+            column, "Releases", (ReleaseBlock, "Add release", new_parts.new_release, why_not)
+        )
         if why_not:
             column.addWidget(text(why_not, "soft"))
-        for i, release in enumerate(plan.releases):
+        for i in range(len(plan.releases)):
             block = ReleaseBlock(self._desk, case, index, i)
-            block.duplicate.clicked.connect(_Do(self._duplicate_release, block, release))
+            block.duplicate.clicked.connect(_Do(self._duplicate, block))
             block.remove.clicked.connect(_Do(self._remove, block, remove_release))
             self._add_block(column, block)
         self.limits = text("", "note")
@@ -188,7 +192,9 @@ class PlanEditor(QWidget):
         used = {steady.donor for steady in plan.steady}
         free = [donor.name for donor in case.donors if donor.name not in used]
         why_not = "" if free else "Each donor has its flow already." if case.donors else NO_DONOR
-        self._section(column, "Steady flow", ("Add steady flow", self._add_steady, why_not))
+        self._section(
+            column, "Steady flow", (SteadyBlock, "Add steady flow", new_parts.new_steady, why_not)
+        )
         for i in range(len(plan.steady)):
             block = SteadyBlock(self._desk, case, index, i)
             block.remove.clicked.connect(_Do(self._remove, block, remove_steady))
@@ -200,8 +206,8 @@ class PlanEditor(QWidget):
         self._section(
             column,
             "Rules",
-            ("Add stop rule", self._add_stop, ""),
-            ("Add release rule", self._add_trigger, "" if case.donors else NO_DONOR),
+            (RuleBlock, "Add stop rule", new_parts.new_stop, ""),
+            (RuleBlock, "Add release rule", new_parts.new_trigger, "" if case.donors else NO_DONOR),
         )
         for i, held in enumerate(plan.rules):
             block = RuleBlock(self._desk, case, index, i, held)
@@ -209,7 +215,9 @@ class PlanEditor(QWidget):
             self._add_block(column, block)
 
     def _build_actions(self, column: QVBoxLayout, case: Case, plan: Plan, index: int) -> None:
-        self._section(column, "Other actions", ("Add other action", self._add_action, ""))
+        self._section(
+            column, "Other actions", (ActionBlock, "Add other action", new_parts.new_action, "")
+        )
         for i in range(len(plan.other_actions)):
             block = ActionBlock(self._desk, case, index, i)
             block.remove.clicked.connect(_Do(self._remove, block, remove_action))
@@ -237,80 +245,38 @@ class PlanEditor(QWidget):
 
     # edits
 
-    def _try(self, make: Callable[[Case], Edit], beside: Block | None = None) -> None:
+    def _try(self, make: Callable[[Case], Edit], beside: Block | None = None) -> bool:
         problems = self._desk.document.try_edit(make)
         if beside is not None and problems:
             beside.sentence.say_problems(problems)
         else:
             self._say(problems)
+        return not problems
 
-    def _add_release(self) -> None:
-        case, plan = self._desk.document.case, self._plan
-        donor, year = case.donors[0].name, case.time.start_year.best
-        self._try(lambda held: add_release(held, plan, donor, year, 1, 1))
-
-    def _duplicate_release(self, block: ReleaseBlock, release: Release) -> None:
+    def _add(self, make: MakePart, kind: type[Block]) -> None:
+        """Add a part, and put the cursor into its first number."""
         plan = self._plan
-        release = self._desk.document.case.plan(plan).releases[block.index]
-        more = {
-            "age": release.who.age,
-            "every_years": release.when.every_years,
-            "times": release.when.times,
-            "survive_to_breed": release.afterwards.survive_to_breed,
-            "breeding_relative_to_residents": release.afterwards.breeding_relative_to_residents,
-            "loan_years": release.loan_years,
-            "each_animal": release.cost.each_animal,
-            "each_event": release.cost.each_event,
-        }
-        who = release.who
-        self._try(
-            lambda case: add_release(
-                case, plan, release.donor, release.when.first_year, who.females, who.males, **more
-            ),
-            block,
-        )
+        if self._try(lambda case: make(case, plan)):
+            self._of_kind(kind)[-1].first().setFocus(Qt.FocusReason.OtherFocusReason)
+
+    def _of_kind(self, kind: type[Block]) -> list[Block]:
+        return [block for block in self.blocks if isinstance(block, kind)]
+
+    def _duplicate(self, block: ReleaseBlock) -> None:
+        plan, index = self._plan, block.index
+        if self._try(lambda case: new_parts.release_again(case, plan, index), block):
+            self._of_kind(ReleaseBlock)[-1].first().setFocus(Qt.FocusReason.OtherFocusReason)
 
     def _remove(self, block: Any, edit: Any) -> None:  # noqa: ANN401 - any of four
-        plan = self._plan
-        self._try(lambda case: edit(case, plan, block.index), block)
-
-    def _add_steady(self) -> None:
-        case, plan = self._desk.document.case, self._plan
-        used = {steady.donor for steady in case.plan(plan).steady}
-        donor = next(donor.name for donor in case.donors if donor.name not in used)
-        self._try(lambda held: set_steady(held, plan, donor, 1))
-
-    def _free_rule_name(self, wanted: str) -> str:
-        taken = {held.name for held in self._desk.document.case.plan(self._plan).rules}
-        number, name = 1, wanted
-        while name in taken:
-            number += 1
-            name = f"{wanted} {number}"
-        return name
-
-    def _add_stop(self) -> None:
-        plan, name = self._plan, self._free_rule_name("ancestry ceiling")
-        new = {"name": name, "when": "donor_ancestry", "above": 0.3, "then": "stop"}
-        self._try(lambda case: add_rule(case, plan, new))
-
-    def _add_trigger(self) -> None:
-        plan, name = self._plan, self._free_rule_name("another wave")
-        case = self._desk.document.case
-        animals = {"donor": case.donors[0].name, "who": {"females": 1, "males": 1}}
-        new = {
-            "name": name, "when": "inbreeding", "above": 0.25, "then": "release",
-            "release": animals,
-        }  # fmt: skip
-        self._try(lambda held: add_rule(held, plan, new))
-
-    def _add_action(self) -> None:
-        plan, year = self._plan, self._desk.document.case.time.start_year.best
-        new = {"what": "Describe what is done", "year": year}
-        self._try(lambda case: add_action(case, plan, new))
+        plan, kind, index = self._plan, type(block), block.index
+        if self._try(lambda case: edit(case, plan, index), block):
+            left = self._of_kind(kind)
+            nearest = left[min(index, len(left) - 1)].remove if left else self.add_buttons[kind]
+            nearest.setFocus(Qt.FocusReason.OtherFocusReason)
 
     def reached(self) -> list[QWidget]:
         """Return what can have the focus, in reading order."""
-        return list(_reached(self._body))
+        return list(reached(self._body))
 
     def words(self) -> list[str]:
         """Return all labels of the editor, for tests and search."""
@@ -325,27 +291,6 @@ class _Do:
 
     def __call__(self, *_signal: object) -> None:
         self._do(*self._given)
-
-
-def _reached(widget: QWidget) -> Iterator[QWidget]:
-    """Yield what can have the focus below `widget`, in the order of the layouts."""
-    if widget.focusPolicy() & Qt.FocusPolicy.TabFocus:
-        yield widget
-        return
-    layout = widget.layout()
-    if layout is not None:
-        yield from _in_layout(layout)
-
-
-def _in_layout(layout: QLayout) -> Iterator[QWidget]:
-    for i in range(layout.count()):
-        item = layout.itemAt(i)
-        inner = item.widget() if item is not None else None
-        if inner is not None:
-            yield from _reached(inner)
-        nested = item.layout() if item is not None else None
-        if inner is None and nested is not None:
-            yield from _in_layout(nested)
 
 
 def _signature(case: Case, index: int) -> tuple[Any, ...]:

@@ -182,6 +182,10 @@ class Block(QWidget):
         self._buttons.insertWidget(self._buttons.count() - 1, made)
         return made
 
+    def first(self) -> QWidget:
+        """Return what is edited first."""
+        return next(iter(self.sentence.fields.values())).edit
+
     def show_words(self, words: str) -> None:
         """Show what the sentence comes to."""
         self.comes_to.setText(words)
