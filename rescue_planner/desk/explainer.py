@@ -48,7 +48,7 @@ class Explainer(QWidget):
         self._lay_out()
         desk.explain.asked.connect(self.show_path)
         desk.document.changed.connect(self._refresh)
-        desk.document.replaced.connect(self._clear)
+        desk.document.replaced.connect(self.clear)
 
     def _lay_out(self) -> None:
         inner = QWidget()
@@ -68,9 +68,10 @@ class Explainer(QWidget):
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
         outer.addWidget(scrolled(inner))
-        self._clear()
+        self.clear()
 
-    def _clear(self) -> None:
+    def clear(self) -> None:
+        """Explain nothing."""
         self._path = ""
         for label in (self._heading, self._unit, self._bounds, self._published, self._caution):
             self._say(label, "")
@@ -201,6 +202,7 @@ class _OriginForm(QWidget):
             blocker = QSignalBlocker(edit)
             if edit.text() != words:
                 edit.setText(words)
+                edit.setCursorPosition(0)
             edit.setModified(False)
             del blocker
         blocker = QSignalBlocker(self.origin)

@@ -87,6 +87,7 @@ class Bound(QWidget):
         self.problem.setWordWrap(True)
         self.problem.setVisible(False)
         desk.document.changed.connect(self.refresh)
+        desk.document.replaced.connect(self.revert)
 
     @property
     def has_problem(self) -> bool:
@@ -96,6 +97,7 @@ class Bound(QWidget):
     def retire(self) -> None:
         """Let go of the case before the field is taken away."""
         self.desk.document.changed.disconnect(self.refresh)
+        self.desk.document.replaced.disconnect(self.revert)
         self.desk.problems_shown.put(self.path, ())
         self.retired = True
 
@@ -107,6 +109,11 @@ class Bound(QWidget):
     def refresh(self) -> None:
         """Show what the case holds; each kind of field says how."""
         raise NotImplementedError
+
+    def revert(self) -> None:
+        """Take what was typed or refused back to what the case holds."""
+        self._show_problems(())
+        self.refresh()
 
     def _describe(self, target: QWidget, label: QLabel | None = None) -> None:
         target.setAccessibleName(self._spoken_name())

@@ -77,6 +77,7 @@ class TextField(Bound):
         if self.text() != text:
             if isinstance(self.edit, QLineEdit):
                 self.edit.setText(text)
+                self.edit.setCursorPosition(0)
             else:
                 self.edit.setPlainText(text)
         del blocker
@@ -85,6 +86,11 @@ class TextField(Bound):
         """Show what the case holds, unless it is being typed over."""
         if not self.has_problem and not self.edit.hasFocus():
             self._put(str(self.held() or ""))
+
+    def revert(self) -> None:
+        """Take typed text back to what the case holds."""
+        self._put(str(self.held() or ""))
+        self._show_problems(())
 
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
         if watched is self.edit:
@@ -98,8 +104,7 @@ class TextField(Bound):
 
     def _key(self, key: Qt.Key) -> bool:
         if key == Qt.Key.Key_Escape:
-            self._put(str(self.held() or ""))
-            self._show_problems(())
+            self.revert()
             return True
         if key in (Qt.Key.Key_Return, Qt.Key.Key_Enter) and isinstance(self.edit, QLineEdit):
             self.commit()

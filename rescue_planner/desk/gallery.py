@@ -92,6 +92,9 @@ class Gallery:
 
         for page in PAGES:
             self.window.show_page(page.key)
+            made = self.window.pages[page.key]
+            if isinstance(made, CasePage):
+                made.area.verticalScrollBar().setValue(0)
             self._settle()
             self._grab(f"{name}--{page.key}--{look}")
         case_page = self.window.pages["case"]

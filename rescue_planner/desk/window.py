@@ -115,6 +115,8 @@ class DeskWindow(QMainWindow):
         if key not in self.pages:
             self.pages[key] = self._made(key)
             self.stack.addWidget(self.pages[key])
+        if key != self.current:
+            self.explainer.clear()
         self.current = key
         self.stack.setCurrentWidget(self.pages[key])
         self.rail.mark(key)

@@ -78,6 +78,19 @@ def test_that_the_strip_follows_the_plans_of_the_case(window) -> None:
     assert [chip.plan for chip in window.strip.chips] == ["No releases", "Two pairs"]
 
 
+def test_that_another_case_leaves_no_text_of_the_last_one(qtbot, window, small_file) -> None:
+    field = _field(window, NE)
+    field.edit.setFocus()
+    field.edit.selectAll()
+    qtbot.keyClicks(field.edit, "4000\r")
+    assert field.has_problem
+    assert window.files.open(small_file)
+    assert field.edit.text() == "16"
+    assert not field.has_problem
+    assert window.desk.problems_shown.shown == {}
+    assert not window.work.problems.isVisible()
+
+
 def test_that_another_case_hides_nothing(window, small_file) -> None:
     window.desk.view.set_hidden("Pairs", True)
     window.files.open(small_file)
@@ -127,6 +140,12 @@ def test_that_the_explainer_tells_meaning_bounds_source_and_caution(window) -> N
     assert "at least 1" in shown._bounds.text()
     assert "Frankham 1995" in shown._published.text()
     assert "Never enter the census" in shown._caution.text()
+
+
+def test_that_the_explainer_of_one_page_is_not_left_on_another(window) -> None:
+    window.desk.explain.show(NE)
+    window.show_page("plans")
+    assert window.explainer._heading.text() != "Effective size (Ne)"
 
 
 def test_that_the_explainer_tells_a_measure_too(window) -> None:
