@@ -33,6 +33,7 @@ from rescue_planner.desk.plan_editor.blocks import (
 from rescue_planner.desk.plan_editor.events import EventModel
 from rescue_planner.desk.plan_editor.sentence import Block
 from rescue_planner.desk.plan_editor.tab_order import reached
+from rescue_planner.desk.plan_editor.timeline import SHORT_HELP, Timeline
 from rescue_planner.desk.widgets import button, rule, text
 from rescue_planner.projection.plan_reading import limit_sentences
 
@@ -63,6 +64,8 @@ class PlanEditor(QWidget):
         self.blocks: list[ReleaseBlock | SteadyBlock | RuleBlock | ActionBlock] = []
         self.add_buttons: dict[type[Block], QWidget] = {}
         self.at_hand: AtHand | None = None
+        self.timeline: Timeline | None = None
+        self._focus_next: QWidget | None = None
         self.events = EventModel(desk, self)
         self.heading = text("", "title")
         self.refused = text("", "problem")
@@ -110,7 +113,7 @@ class PlanEditor(QWidget):
         self.heading.setText("")
         if self._built is not None:
             self._replace_body(QWidget())
-            self.blocks, self.at_hand, self._built = [], None, None
+            self.blocks, self.at_hand, self.timeline, self._built = [], None, None, None
 
     def _replace_body(self, body: QWidget) -> None:
         self._outer.replaceWidget(self._body, body)
@@ -130,13 +133,31 @@ class PlanEditor(QWidget):
         self.at_hand = AtHand(self._desk, case, index)
         column.addWidget(self.at_hand)
         if plan.name == NO_RELEASES:
+            self.timeline = None
             column.addWidget(text(NOTHING_HERE))
         else:
+            self._build_timeline(column, plan, index)
             self._build_releases(column, case, plan, index)
             self._build_steady(column, case, plan, index)
             self._build_rules(column, case, plan, index)
             self._build_actions(column, case, plan, index)
         self._replace_body(body)
+        if self._focus_next is not None:
+            self._focus_next.setFocus(Qt.FocusReason.OtherFocusReason)
+            self._focus_next = None
+
+    def _build_timeline(self, column: QVBoxLayout, plan: Plan, index: int) -> None:
+        """Build the calendar; where the last one had the cursor, so has this one."""
+        before, self.timeline = self.timeline, Timeline(self._desk, index)
+        self.timeline.refused.connect(self._say)
+        column.addWidget(rule())
+        column.addWidget(self.timeline)
+        column.addWidget(text(SHORT_HELP, "note"))
+        if before is not None and before.hasFocus() and before.index == index:
+            count = len(plan.releases)
+            added = count > before.count()
+            self.timeline.current = count - 1 if added else before.current
+            self._focus_next = self.timeline
 
     def _section(self, column: QVBoxLayout, words: str, *buttons: AddButton) -> None:
         """Add a rule, a heading, and buttons that add a part."""
@@ -231,7 +252,8 @@ class PlanEditor(QWidget):
         if self.at_hand is not None:
             self.at_hand.refresh(case, plan)
         self.events.show_plan(case, index, plan)
-        if plan.name != NO_RELEASES:
+        if plan.name != NO_RELEASES and self.timeline is not None:
+            self.timeline.show_plan(case, plan)
             said = limit_sentences(case, plan)
             self.limits.setText(" ".join([*said, DONOR_CAUTION]) if said else "")
             self.limits.setVisible(bool(said))

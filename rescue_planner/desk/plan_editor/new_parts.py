@@ -10,7 +10,12 @@ from rescue_planner.case.edits import Edit, add_action, add_release, add_rule, s
 
 def new_release(case: Case, plan: str) -> Edit:
     """Add a pair from the first donor in the first year."""
-    return add_release(case, plan, case.donors[0].name, case.time.start_year.best, 1, 1)
+    return release_in(case, plan, case.time.start_year.best)
+
+
+def release_in(case: Case, plan: str, year: float) -> Edit:
+    """Add a pair from the first donor in a year."""
+    return add_release(case, plan, case.donors[0].name, year, 1, 1)
 
 
 def release_again(case: Case, plan: str, index: int) -> Edit:
