@@ -19,6 +19,7 @@ _AT, _SHARE = 0.5 * (_NODES + 1.0), 0.5 * _WEIGHTS
 _PANELS = 32
 _RISE_A_PANEL = 4.0
 _LARGEST_RISE = 600.0
+_STEEPEST = 1e6  # then a quarter of a million panels
 
 
 def _exponent(x: FloatArray, scale: float, h: float) -> FloatArray:
@@ -47,6 +48,8 @@ def _log_integral(low: float, high: float, scale: float, h: float) -> float:
 def _fixation(p: float, scale: float, h: float) -> float:
     if p <= 0.0 or p >= 1.0 or scale == 0.0:
         return p
+    if _steepness(scale, h) > _STEEPEST:
+        raise ValueError("selection is too strong for the diffusion: it decides, not drift")
     low, high = _log_integral(0.0, p, scale, h), _log_integral(p, 1.0, scale, h)
     return float(1.0 / (1.0 + np.exp(np.minimum(high - low, 700.0))))
 
@@ -68,6 +71,11 @@ def fixation(p: Numbers, ne: Numbers, s: Numbers, h: Numbers = 0.5) -> FloatArra
     -------
     (...) array
         Probability.
+
+    Raises
+    ------
+    ValueError
+        If 2 Ne s exceeds some hundred thousands: drift then plays no part.
     """
     solve = np.vectorize(_fixation, otypes=[np.float64])
     return np.asarray(solve(floats(p), 2.0 * floats(ne) * floats(s), floats(h)))[()]

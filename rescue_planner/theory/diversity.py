@@ -124,6 +124,29 @@ def diversity_from_mixing(
     return floats(h_pool) - (1.0 - total(m)) * floats(h) - total(m * floats(donor_h))
 
 
+def settled_under_flow(donor_h: Numbers, ne: Numbers, m: Numbers) -> FloatArray:
+    """Return the long-run gene diversity of a recipient under steady flow from one large donor.
+
+    H = (1 - 1/(2 Ne)) H_d [1 - (1-m)^2] / [1 - (1 - 1/(2 Ne)) (1-m)^2].
+
+    Parameters
+    ----------
+    donor_h : (...) array
+        H_d of the donor, constant.
+    ne : (...) array
+        Effective size of the recipient, animals, at least 0.5.
+    m : (...) array
+        Share of gene copies from the donor per generation.
+
+    Returns
+    -------
+    (...) array
+        Drawn with replacement; below H_d, 0 without flow. Source: Wright 1931, 1943.
+    """
+    left, stay = retained(ne), (1.0 - floats(m)) ** 2
+    return left * floats(donor_h) * (1.0 - stay) / (1.0 - left * stay)
+
+
 def drifted(h: Numbers, ne: Numbers) -> FloatArray:
     """Return (1 - 1/(2 Ne)) H, gene diversity after one generation of drift.
 

@@ -34,6 +34,25 @@ def separate_sexes_after(
     return (1.0 - share) * theta + 0.5 * share * (1.0 + floats(inbreeding)), theta
 
 
+def separate_sexes_kept(ne: Numbers) -> FloatArray:
+    """Return the share of diversity two sexes keep per generation in the long run.
+
+    [1 - 1/Ne + sqrt(1 + 1/Ne^2)] / 2, about 1 - 1/(2 Ne + 1): as if Ne were half an animal more.
+
+    Parameters
+    ----------
+    ne : (...) array
+        4 Nm Nf / (Nm + Nf), animals, at least 1.
+
+    Returns
+    -------
+    (...) array
+        Share, 0 to 1. Source: Wright 1931, from memory; derived.
+    """
+    share = 1.0 / floats(ne)
+    return 0.5 * (1.0 - share + np.sqrt(1.0 + share**2))
+
+
 def with_flow_after(identity: Numbers, ne: Numbers, m: Numbers) -> FloatArray:
     """Return identity of two distinct copies after drift and steady flow.
 

@@ -96,8 +96,8 @@ def _identity_step(numbers: FloatArray, shares: FloatArray) -> FloatArray:
     for (i, j), row in at.items():
         first = np.eye(ages)[i - 1] if i else shares
         second = np.eye(ages)[j - 1] if j else shares
-        for a in range(ages):
-            for b in range(ages):
+        for a in map(int, np.flatnonzero(first)):
+            for b in map(int, np.flatnonzero(second)):
                 weight = first[a] * second[b]
                 if a == b and i == 0:  # drawn with replacement: the same copy can come twice
                     weight *= 1.0 - 0.5 / numbers[a]

@@ -138,8 +138,15 @@ def with_selection(
     -------
     Stationary
         Each (...).
+
+    Raises
+    ------
+    ValueError
+        If a fitness isn't above 0, or as in `exponents`.
     """
     a, b = exponents(forces)
+    if np.any(floats(s) <= -1.0) or np.any(floats(h) * floats(s) <= -1.0):
+        raise ValueError("fitness has to be above 0 for every genotype")
 
     def one(*given: float) -> tuple[float, float]:
         return _moments(*given, powered=fitness_to_the_power)

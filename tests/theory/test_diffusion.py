@@ -105,6 +105,8 @@ def test_that_ends_and_strong_selection_are_told_apart():
     with pytest.raises(ValueError, match="too strong"):
         diffusion.time_to_fixation(0.1, 10_000, 0.5)
     assert_allclose(diffusion.fixation(0.1, 10_000, 0.5), 1.0)
+    with pytest.raises(ValueError, match="too strong"):
+        diffusion.fixation(0.1, 1e9, 0.5)
 
 
 def test_that_cases_broadcast():

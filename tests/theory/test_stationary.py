@@ -118,6 +118,12 @@ def test_that_one_sided_flow_is_refused():
             stationary.neutral(Forces(20, 0.1, donor))
 
 
+@pytest.mark.parametrize(("s", "h"), [(-1.0, 0.5), (-0.5, 2.0)])
+def test_that_a_deadly_genotype_is_refused(s, h):
+    with pytest.raises(ValueError, match="above 0 for every genotype"):
+        stationary.with_selection(Forces(20, 0.1, 0.3), s, h)
+
+
 def test_that_cases_broadcast():
     found = stationary.with_selection(Forces([20, 30], 0.1, [[0.2], [0.3], [0.4]]), 0.01, 0.5)
     assert found.mean.shape == (3, 2)
