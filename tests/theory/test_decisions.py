@@ -41,9 +41,9 @@ def test_that_the_sure_payoff_has_the_gambles_utility(rho, x):
 def test_that_utility_is_anchored_and_smooth_through_indifference():
     assert_allclose(decisions.utility([0.0, 1.0], 3.0), [0.0, 1.0], atol=1e-15)
     rho = np.array([-1.1e-6, -0.9e-6, 0.0, 0.9e-6, 1.1e-6])
-    assert_allclose(decisions.utility(0.3, rho), 0.3 + 0.5 * rho * 0.21, atol=1e-10)
+    assert_allclose(decisions.utility(0.3, rho), 0.3 + 0.5 * rho * 0.21, rtol=0, atol=1e-12)
     near = decisions.certainty_equivalent([0.9, 0.3], [0.5, 0.5], rho)
-    assert_allclose(near, 0.6 - 0.5 * rho * 0.09, atol=1e-9)
+    assert_allclose(near, 0.6 - 0.5 * rho * 0.09, rtol=0, atol=1e-9)
 
 
 @pytest.mark.parametrize(
@@ -123,3 +123,8 @@ def test_that_probabilities_must_be_probabilities(chances):
         decisions.expected(PAYOFFS, chances)
     with pytest.raises(ValueError, match="sum to 1"):
         decisions.certainty_equivalent([0.1, 0.2, 0.3], chances, 1.0)
+
+
+def test_that_a_signals_chances_must_sum_to_one_in_every_scenario():
+    with pytest.raises(ValueError, match="sum to 1"):
+        decisions.value_of_signal(PAYOFFS, CHANCES, [[0.85, 0.2, 0.2], [0.15, 0.8, 0.7]])

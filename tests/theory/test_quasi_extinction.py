@@ -113,6 +113,14 @@ def test_that_a_trend_is_found_back_from_uneven_years():
     assert found.variance_low < found.variance < found.variance_high
 
 
+def test_that_yearly_counts_have_the_ordinary_mean_and_variance():
+    """Even years: mean and unbiased variance of the log steps."""
+    counts = np.array([40, 44, 37, 41, 30, 35.0])
+    steps = np.diff(np.log(counts))
+    found = quasi.fit_counts(np.arange(6), counts)
+    assert_allclose((found.mu, found.variance), (steps.mean(), steps.var(ddof=1)), rtol=1e-12)
+
+
 def test_that_the_range_holds_the_best_value_and_widens_with_ignorance():
     counts = [40, 44, 37, 41, 30, 35, 33, 38, 29, 31]
     trend = quasi.fit_counts(np.arange(10), counts)
