@@ -12,6 +12,9 @@ import numpy as np
 from rescue_planner.theory.arrays import FloatArray, Numbers, floats, total
 from rescue_planner.theory.families import SexFamilies
 
+_ROUNDS = 1000
+_SETTLED = 1e-15
+
 
 class AgeClasses(NamedTuple):
     """What age classes make of drift: generation length L, yearly share kept, exact Ne; floats."""
@@ -105,6 +108,19 @@ def _identity_step(numbers: FloatArray, shares: FloatArray) -> FloatArray:
     return step
 
 
+def _loss(step: FloatArray) -> float:
+    """Return 1 minus the leading eigenvalue, by inverse iteration at 1: keeps the small digits."""
+    inverse = np.linalg.inv(np.eye(step.shape[0]) - step)
+    pairs, growth = np.ones(step.shape[0]), 0.0
+    for _ in range(_ROUNDS):
+        grown = inverse @ pairs
+        before, growth = growth, float(np.max(grown))
+        pairs = grown / growth
+        if abs(growth - before) <= _SETTLED * growth:
+            break
+    return 1.0 / growth
+
+
 def exact_age_classes(numbers: Numbers, shares: Numbers) -> AgeClasses:
     """Return the exact rate of drift of an age-structured population, one sex or both pooled.
 
@@ -132,6 +148,6 @@ def exact_age_classes(numbers: Numbers, shares: Numbers) -> AgeClasses:
     n, share = floats(numbers), floats(shares)
     if n.ndim != 1 or n.shape != share.shape or abs(float(np.sum(share)) - 1.0) > 1e-9:
         raise ValueError("age classes need one number and one share each, the shares summing to 1")
-    kept = float(np.max(np.abs(np.linalg.eigvals(_identity_step(n, share)))))
+    lost = _loss(_identity_step(n, share))
     length = float(generation_length(share))
-    return AgeClasses(length, kept, 0.5 / (length * (1.0 - kept)))
+    return AgeClasses(length, 1.0 - lost, 0.5 / (length * lost))

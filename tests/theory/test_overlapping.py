@@ -20,7 +20,7 @@ def test_that_age_classes_drift_at_the_exact_rate(numbers, shares, length, kept,
     found = overlapping.exact_age_classes(numbers, shares)
     assert_allclose(found.generation_length, length, rtol=1e-14)
     assert_allclose(found.kept_per_unit, kept, rtol=1e-12)
-    assert_allclose(found.ne, ne, rtol=1e-9)  # 1 - kept has lost three digits
+    assert_allclose(found.ne, ne, rtol=DIGITS)
 
 
 @pytest.mark.parametrize(("numbers", "shares", "length", "kept", "ne"), ROWS)
