@@ -110,6 +110,13 @@ def test_that_two_classes_give_the_load_between_them():
     assert_allclose(depression_fit.load_between(*survival, 0.25), 2.5, rtol=1e-13)
 
 
+def test_that_published_gains_of_outcrossing_imply_the_stated_loads():
+    """Frankham 2015 (+148 %, +45 %) and 2016 (+42, +84, +86 %), at a fall of F by 0.25."""
+    gains = 1 + np.array([1.48, 0.45, 0.42, 0.84, 0.86])
+    stated = [3.6330, 1.4863, 1.4026, 2.4391, 2.4823]
+    assert_allclose(depression_fit.load_between(gains, 1.0, 0.25), stated, atol=5.1e-5)
+
+
 def test_that_impossible_rates_have_no_likelihood():
     assert depression_fit.log_likelihood(F, BORN, LIVED, -0.1, 1.0) == -np.inf
     assert depression_fit.log_likelihood(F, BORN, LIVED, 0.0, 1.0) == -np.inf
