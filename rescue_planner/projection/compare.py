@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 import hashlib
+import threading
+from collections import OrderedDict
 from collections.abc import Callable, Iterator, Sequence
-from functools import lru_cache
 
 import numpy as np
 
@@ -12,8 +13,9 @@ from rescue_planner import __version__
 from rescue_planner.case.document import Case
 from rescue_planner.case.file import case_hash
 from rescue_planner.case.measures import keys
+from rescue_planner.projection import joined
 from rescue_planner.projection.exact import locus_odds
-from rescue_planner.projection.expected import Course, expected_course
+from rescue_planner.projection.expected import Course
 from rescue_planner.projection.results import Comparison, Depth, Series, read_only
 from rescue_planner.projection.setup import setup
 
@@ -60,13 +62,11 @@ def compare(
         For a plan that the case does not have.
     """
     chosen = _chosen(case, plans)
-    courses = []
+    courses = plan_courses(case, chosen)
     series: list[Series] = []
-    for done, name in enumerate(chosen):
+    for done, course in enumerate(courses):
         if checkpoint is not None:
             checkpoint(done, len(chosen))
-        course = plan_course(case, name)
-        courses.append(course)
         series.extend(_series_of(course, depths, checkpoint, (done, len(chosen))))
     start, length = float(case.time.start_year.best), float(case.time.generation_years.best)
     count = courses[0].setup.steps
@@ -89,36 +89,72 @@ def compare(
         depths=tuple(depth for depth in depths if any(s.depth == depth for s in series)),
         series=tuple(series),
         events=tuple(event for course in courses for event in course.book.events),
-        not_applied=tuple(name for course in courses for name in course.book.not_applied),
+        not_applied=tuple(
+            f"{entry.plan}: {entry.rule.name}"
+            for course in courses
+            for entry in course.book.not_applied
+        ),
         capped=tuple(c.setup.plan for c in courses if c.capped[:, 0].any()),
     )
 
 
-def plan_course(case: Case, name: str) -> Course:
-    """Return the average course of one plan; an unchanged plan is not computed again.
+def plan_courses(case: Case, names: Sequence[str]) -> tuple[Course, ...]:
+    """Return the average course of each plan named; an unchanged plan is not computed again.
 
     Raises
     ------
     KeyError
         For a plan that the case does not have.
     """
-    return _course(
-        case.model_copy(
-            update={
-                "plans": (case.plan(name),),
-                "title": "",
-                "decision": None,
-                "what_ifs": (),
-                "targets": (),
-                "answers": (),
-            }
-        )
+    alone = [_alone(case, name) for name in names]
+    found = {one: kept for one in alone if (kept := _KEPT.get(one)) is not None}
+    wanted = [one for one in alone if one not in found]
+    walked = joined.courses([setup(one, one.plans[0]) for one in wanted])
+    for one, course in zip(wanted, walked, strict=True):
+        found[one] = course
+        _KEPT.put(one, course)
+    return tuple(found[one] for one in alone)
+
+
+def _alone(case: Case, name: str) -> Case:
+    """Return the case as far as one plan depends on it."""
+    return case.model_copy(
+        update={
+            "plans": (case.plan(name),),
+            "title": "",
+            "decision": None,
+            "what_ifs": (),
+            "targets": (),
+            "answers": (),
+        }
     )
 
 
-@lru_cache(maxsize=64)
-def _course(alone: Case) -> Course:
-    return expected_course(setup(alone, alone.plans[0]))
+class _Kept:
+    """The courses used last, for the desk's thread and its background job alike."""
+
+    def __init__(self, most: int) -> None:
+        self._most = most
+        self._courses: OrderedDict[Case, Course] = OrderedDict()
+        self._lock = threading.Lock()
+
+    def get(self, alone: Case) -> Course | None:
+        """Return a course, and count it as used."""
+        with self._lock:
+            course = self._courses.get(alone)
+            if course is not None:
+                self._courses.move_to_end(alone)
+            return course
+
+    def put(self, alone: Case, course: Course) -> None:
+        """Keep a course, and let the one unused longest go."""
+        with self._lock:
+            self._courses[alone] = course
+            while len(self._courses) > self._most:
+                self._courses.popitem(last=False)
+
+
+_KEPT = _Kept(64)
 
 
 def _chosen(case: Case, plans: Sequence[str] | None) -> tuple[str, ...]:

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 from rescue_planner.case.document import Case
 from rescue_planner.case.remarks import Remark, remarks
 from rescue_planner.projection.chain_path import LARGEST_COPIES
-from rescue_planner.projection.compare import plan_course
+from rescue_planner.projection.compare import plan_courses
 from rescue_planner.projection.donor_take import donor_remarks
 from rescue_planner.projection.expected import Course
 from rescue_planner.theory.chain import copies
@@ -23,8 +23,7 @@ def every_remark(case: Case) -> tuple[Remark, ...]:
     """Return the remarks on the case as it stands and on the course of every plan."""
     found = list(remarks(case))
     said = {(remark.key, remark.path) for remark in found}
-    for index, plan in enumerate(case.plans):
-        course = plan_course(case, plan.name)
+    for index, course in enumerate(plan_courses(case, [plan.name for plan in case.plans])):
         for remark in _on_course(case, f"plans[{index}]", course):
             if (remark.key, remark.path) not in said:
                 said.add((remark.key, remark.path))
@@ -46,11 +45,11 @@ def _on_course(case: Case, path: str, course: Course) -> Iterator[Remark]:
             f"Under {name}, 2Ne passes {LARGEST_COPIES:,}: the one-locus odds are not computed. "
             "At that size drift hardly matters; read the average course.",
         )
-    for rule in course.book.not_applied:
+    for entry in course.book.not_applied:
         yield Remark(
             "rule-not-applied",
             path,
-            f"The rule “{rule.split(': ', 1)[1]}” of {name} reads a measure without an expected "
+            f"The rule “{entry.rule.name}” of {name} reads a measure without an expected "
             "value, so it is not applied at these depths.",
         )
 

@@ -12,7 +12,7 @@ from rescue_planner.case.filled import TOLERANCE_STEPS
 from rescue_planner.case.measures import title
 from rescue_planner.case.plans import Rule
 from rescue_planner.projection.results import RuleEvent
-from rescue_planner.projection.setup import Setup
+from rescue_planner.projection.setup import RuleSetup, Setup
 
 FloatArray = NDArray[np.float64]
 
@@ -24,7 +24,7 @@ class RuleBook:
     stopped: NDArray[np.bool_]
     fired: list[NDArray[np.int64]]
     events: list[RuleEvent] = field(default_factory=list)
-    not_applied: list[str] = field(default_factory=list)
+    not_applied: list[RuleSetup] = field(default_factory=list)
 
 
 def open_book(setup: Setup) -> RuleBook:
@@ -36,40 +36,35 @@ def open_book(setup: Setup) -> RuleBook:
 def act(book: RuleBook, setup: Setup, t: int, values: Mapping[str, FloatArray]) -> None:
     """Let every rule read `values` at t; stops first, so that no release slips past one."""
     for then in ("stop", "release"):
-        for index, rule in enumerate(setup.rules):
-            if rule.then == then:
+        for index, entry in enumerate(setup.rules):
+            if entry.rule.then == then:
                 _one(book, setup, t, index, values)
 
 
 def _one(
     book: RuleBook, setup: Setup, t: int, index: int, values: Mapping[str, FloatArray]
 ) -> None:
-    rule = setup.rules[index]
+    entry = setup.rules[index]
+    rule = entry.rule
     if rule.when not in values:
-        name = f"{setup.plan}: {rule.name}"
-        if name not in book.not_applied:
-            book.not_applied.append(name)
+        if entry not in book.not_applied:
+            book.not_applied.append(entry)
         return
     value = values[rule.when]
-    met = _met(rule, value) & ~book.stopped
+    met = _met(rule, value) & entry.where & ~book.stopped
     if rule.then == "stop":
-        if met[0]:
-            book.events.append(_event(setup, rule, t, float(value[0]), "releases stop"))
         book.stopped |= met
+        _note(book, setup, entry, t, np.where(met, value, np.nan), "releases stop")
         return
-    numbers = setup.schedule.rule_releases[index]
-    if numbers is None:
+    if entry.release is None:
         return
     acts = met & (book.fired[index] < int(rule.at_most.best))
     book.fired[index] += acts
     delay = float(rule.delay_years.best)
     at = int(t + delay / setup.generation_years + TOLERANCE_STEPS)
-    setup.schedule.add(at, numbers, acts.astype(np.float64))
-    if acts[0]:
-        year = setup.start_year + t * setup.generation_years + delay
-        book.events.append(
-            _event(setup, rule, t, float(value[0]), f"a release is set for {year:g}")
-        )
+    setup.schedule.add(at, entry.release, acts.astype(np.float64))
+    year = setup.start_year + t * setup.generation_years + delay
+    _note(book, setup, entry, t, np.where(acts, value, np.nan), f"a release is set for {year:g}")
 
 
 def _met(rule: Rule, value: FloatArray) -> NDArray[np.bool_]:
@@ -81,12 +76,21 @@ def _met(rule: Rule, value: FloatArray) -> NDArray[np.bool_]:
     return met
 
 
-def _event(setup: Setup, rule: Rule, t: int, value: float, what: str) -> RuleEvent:
-    year = setup.start_year + t * setup.generation_years
+def _note(
+    book: RuleBook, setup: Setup, entry: RuleSetup, t: int, read: FloatArray, what: str
+) -> None:
+    """Write down that a rule acted in the column that stands for its plan.
+
+    `read` holds what the rule read in the columns where it acted, NaN elsewhere.
+    """
+    value = read[setup.plans.index(entry.plan)]
+    if np.isnan(value):
+        return
+    rule, year = entry.rule, setup.start_year + t * setup.generation_years
     bounds = [
         f"above {rule.above.best:g}" if rule.above is not None else "",
         f"below {rule.below.best:g}" if rule.below is not None else "",
     ]
     bound = " and ".join(word for word in bounds if word)
     sentence = f"{year:g}: {title(rule.when)} is {value:.4g}, {bound}: {what}."
-    return RuleEvent(setup.plan, rule.name, t, year, sentence)
+    book.events.append(RuleEvent(entry.plan, rule.name, t, year, sentence))

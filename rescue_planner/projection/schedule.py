@@ -38,7 +38,6 @@ class Schedule:
 
     Newcomers are (G, n, D); animals, survivors and costs (G, n); factors of other actions on
     size (G, n), and on carrying capacity and first-year survival at each t (G + 1, n).
-    `rule_releases` holds one entry for each rule, nothing for a rule that stops.
     """
 
     newcomer_females: FloatArray
@@ -51,7 +50,6 @@ class Schedule:
     size_times: FloatArray
     capacity_times: FloatArray
     first_year_times: FloatArray
-    rule_releases: tuple[ReleaseNumbers | None, ...]
 
     def add(self, t: int, release: ReleaseNumbers, where: FloatArray) -> None:
         """Put a release into step `t`, weighted by `where` (n,); past the horizon, nothing."""
@@ -72,7 +70,7 @@ def schedule(case: Case, plan: Plan, index: int, count: int, read: Read) -> Sche
     result = _empty(count, n, len(donors))
     at = f"plans[{index}]"
     for i, release in enumerate(plan.releases):
-        numbers = _numbers(release, donors, f"{at}.releases[{i}]", read)
+        numbers = release_numbers(release, donors, f"{at}.releases[{i}]", read)
         for year in release.years():
             result.add(step_of(year, start, generation), numbers, one)
     for i, steady in enumerate(plan.steady):
@@ -81,12 +79,6 @@ def schedule(case: Case, plan: Plan, index: int, count: int, read: Read) -> Sche
         result.steady[:, :, donors.index(steady.donor)] += covered[:, None] * rate / 2
     for i, action in enumerate(plan.other_actions):
         _act(result, action, f"{at}.other_actions[{i}]", (start, generation), read)
-    result.rule_releases = tuple(
-        None
-        if rule.release is None or rule.then == "stop"
-        else _numbers(rule.release, donors, f"{at}.rules[{i}].release", read)
-        for i, rule in enumerate(plan.rules)
-    )
     return result
 
 
@@ -102,11 +94,11 @@ def _empty(count: int, n: int, donors: int) -> Schedule:
         size_times=np.ones((count, n)),
         capacity_times=np.ones((count + 1, n)),
         first_year_times=np.ones((count + 1, n)),
-        rule_releases=(),
     )
 
 
-def _numbers(release: RuleRelease, donors: list[str], at: str, read: Read) -> ReleaseNumbers:
+def release_numbers(release: RuleRelease, donors: list[str], at: str, read: Read) -> ReleaseNumbers:
+    """Return one release, at path `at`, as numbers."""
     females = read(f"{at}.who.females", release.who.females)
     males = read(f"{at}.who.males", release.who.males)
     after = release.afterwards

@@ -24,7 +24,12 @@ from rescue_planner.case.life import LifeCycle
 from rescue_planner.case.plans import Plan, Rule
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.projection.distances import Distances, distances
-from rescue_planner.projection.schedule import Schedule, schedule
+from rescue_planner.projection.schedule import (
+    ReleaseNumbers,
+    Schedule,
+    release_numbers,
+    schedule,
+)
 
 FloatArray = NDArray[np.float64]
 Draws = Mapping[str, FloatArray]
@@ -87,10 +92,24 @@ class LocusSetup:
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class Setup:
-    """Everything one plan's expected and exact depths read."""
+class RuleSetup:
+    """A rule, the plan it belongs to, the columns it reads (n,), and what it would release."""
 
+    rule: Rule
     plan: str
+    where: NDArray[np.bool_]
+    release: ReleaseNumbers | None
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Setup:
+    """Everything the expected and exact depths of a plan read, or of several plans at once.
+
+    `plans` names the plan of each of the first columns: one name where the columns are draws of
+    one plan, a name for every column where each is a plan of its own.
+    """
+
+    plans: tuple[str, ...]
     donors: tuple[str, ...]
     steps: int
     start_year: float
@@ -112,7 +131,12 @@ class Setup:
     trait: TraitSetup | None
     loci: tuple[LocusSetup, ...]
     schedule: Schedule
-    rules: tuple[Rule, ...]
+    rules: tuple[RuleSetup, ...]
+
+    @property
+    def plan(self) -> str:
+        """The plan of the first column."""
+        return self.plans[0]
 
     @property
     def draws(self) -> int:
@@ -139,7 +163,7 @@ def setup(case: Case, plan: Plan, draws: Draws | None = None) -> Setup:
     size = plan.effective_size
     loads = "inbreeding_cost.lethal_equivalents_diploid"
     return Setup(
-        plan=plan.name,
+        plans=(plan.name,),
         donors=tuple(donor.name for donor in case.donors),
         steps=count,
         start_year=start,
@@ -184,7 +208,23 @@ def setup(case: Case, plan: Plan, draws: Draws | None = None) -> Setup:
         trait=None if case.trait is None else _trait(case, case.trait, apart, read),
         loci=tuple(_locus(case, i, locus, read) for i, locus in enumerate(case.loci)),
         schedule=schedule(case, plan, index, count, read),
-        rules=plan.rules,
+        rules=_rules(case, plan, index, read),
+    )
+
+
+def _rules(case: Case, plan: Plan, index: int, read: Reader) -> tuple[RuleSetup, ...]:
+    donors = [donor.name for donor in case.donors]
+    everywhere = np.ones(read.n, dtype=bool)
+    return tuple(
+        RuleSetup(
+            rule,
+            plan.name,
+            everywhere,
+            None
+            if rule.release is None or rule.then == "stop"
+            else release_numbers(rule.release, donors, f"plans[{index}].rules[{i}].release", read),
+        )
+        for i, rule in enumerate(plan.rules)
     )
 
 

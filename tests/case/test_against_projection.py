@@ -8,7 +8,7 @@ from hypothesis import strategies as st
 from rescue_planner.case.filled import steps
 from rescue_planner.case.problems import read_case
 from rescue_planner.case.remarks import remarks
-from rescue_planner.projection.compare import plan_course
+from rescue_planner.projection.compare import plan_courses
 from rescue_planner.projection.distances import distances
 from rescue_planner.projection.schedule import schedule
 from tests.case.sample import changed, problems_of, with_release
@@ -44,7 +44,7 @@ def test_that_remarks_on_the_start_are_those_the_projection_would_make(raw):
 )
 def test_that_decline_at_the_start_is_that_of_the_projection(raw):
     case = read_case(raw)
-    course = plan_course(case, "No releases")
+    course = plan_courses(case, ["No releases"])[0]
     held = not case.recipient.effective_size_follows_adults
     rate = course.values["yearly_growth"][0][0]
     assert (("decline-with-size-held", "life_cycle") in keys(case)) == (held and rate < 1 - 1e-9)
