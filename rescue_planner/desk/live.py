@@ -16,18 +16,18 @@ if TYPE_CHECKING:
     from rescue_planner.projection.results import Comparison
 
 COALESCE_MS = 16
-# Measured on two cores of a server, plain path, nothing cached: 0.5 ms a step of a plan, and 70 ns
-# a unit of (2Ne)^1.5. The bounds hold the GUI thread for about 0.1 s and 0.06 s at the worst.
-MOST_EXPECTED_AT_ONCE = 200.0
-MOST_EXACT_AT_ONCE = 8.0e5
+# Measured on two cores of a server, nothing cached: 1 ms a step of all plans together; a unit of
+# (2Ne)^1.5 takes 70 ns on the plain path and 3 ns compiled. The bounds hold the GUI thread for
+# about 0.1 s and 0.06 s at the worst.
+MOST_EXPECTED_AT_ONCE = 100.0
+MOST_EXACT_AT_ONCE = {"plain": 8.0e5, "compiled": 2.0e7}
 EXACT_NAME = "One-locus odds"
 EXPECTED_NAME = "Average course"
 
 
 def expected_cost(case: Case) -> float:
-    """Return how many steps the average courses of all plans take."""
-    count = steps(float(case.time.horizon_years.best), float(case.time.generation_years.best))
-    return float(count * len(case.plans))
+    """Return how many steps the average courses take; all plans are walked together."""
+    return float(steps(float(case.time.horizon_years.best), float(case.time.generation_years.best)))
 
 
 def exact_cost(case: Case) -> float:
@@ -40,6 +40,13 @@ def exact_cost(case: Case) -> float:
             size *= max(1.0, float(action.carrying_capacity_times.best))
         total += len(case.loci) * count * (2.0 * size) ** 1.5
     return total
+
+
+def most_exact_at_once() -> float:
+    """Return the bound on `exact_cost` for the path that is in use."""
+    from rescue_planner.projection.chain_path import path_in_use
+
+    return MOST_EXACT_AT_ONCE[path_in_use()]
 
 
 class LiveComparison(QObject):
@@ -91,7 +98,7 @@ class LiveComparison(QObject):
         if expected_cost(case) > MOST_EXPECTED_AT_ONCE:
             self._in_background(case, EXPECTED_NAME)
             return
-        cheap = exact_cost(case) <= MOST_EXACT_AT_ONCE
+        cheap = exact_cost(case) <= most_exact_at_once()
         self._take(case, _compare(case, exact=cheap))
         if cheap:
             self.busy.emit("")

@@ -52,7 +52,7 @@ def test_that_a_stale_comparison_is_not_given_out(desk, small) -> None:
 
 
 def test_that_costly_odds_come_behind_the_average_course(qtbot, desk, small, monkeypatch) -> None:
-    monkeypatch.setattr(live_module, "MOST_EXACT_AT_ONCE", 0.0)
+    monkeypatch.setattr(live_module, "most_exact_at_once", lambda: 0.0)
     heard = []
     desk.live.updated.connect(heard.append)
     desk.document.new(small)
@@ -64,7 +64,7 @@ def test_that_costly_odds_come_behind_the_average_course(qtbot, desk, small, mon
 
 
 def test_that_odds_of_a_case_that_has_moved_on_are_dropped(qtbot, desk, small, monkeypatch) -> None:
-    monkeypatch.setattr(live_module, "MOST_EXACT_AT_ONCE", 0.0)
+    monkeypatch.setattr(live_module, "most_exact_at_once", lambda: 0.0)
     heard = []
     desk.live.updated.connect(heard.append)
     desk.document.new(small)
