@@ -64,10 +64,12 @@ def chance_ever(distance: Numbers, mu: Numbers, variance: Numbers) -> FloatArray
 def mean_time_if_reached(distance: Numbers, mu: Numbers) -> FloatArray:
     """Return d / |mu|, the mean years to the threshold among courses that reach it; (...).
 
-    inf at mu = 0. Inverse Gaussian; never the mean over all courses when mu is above 0.
+    0 where d is 0, else inf at mu = 0. Inverse Gaussian; never the mean over all courses when mu is
+    above 0.
     """
-    with np.errstate(divide="ignore"):
-        return floats(distance) / np.abs(floats(mu))
+    d = floats(distance)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        return np.where(d == 0.0, 0.0, d / np.abs(floats(mu)))[()]
 
 
 def fit_counts(years: Numbers, counts: Numbers, level: float = 0.95) -> CountTrend:

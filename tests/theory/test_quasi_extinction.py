@@ -51,6 +51,7 @@ def test_that_a_steep_decline_does_not_overflow():
 
 def test_that_no_distance_is_there_already():
     assert_allclose(quasi.chance_by(0.0, [-0.1, 0.0, 0.1], 0.04, 10), 1.0, rtol=1e-14)
+    assert_allclose(quasi.mean_time_if_reached([0.0, 0.0, 1.0], [0.1, 0.0, 0.0]), [0, 0, np.inf])
 
 
 @pytest.mark.parametrize(
