@@ -41,19 +41,22 @@ def chance_by(distance: Numbers, mu: Numbers, variance: Numbers, years: Numbers)
     distance : (...) array
         d = ln(N_0 / N_q), not negative.
     mu, variance : (...) array
-        Mean and variance (above 0) of log growth per year.
+        Mean and variance of log growth per year.
     years : (...) array
-        t, above 0.
+        t, not negative.
 
     Returns
     -------
     (...) array
-        Probability. The second term is computed in logarithms, so that it doesn't overflow.
+        Probability; where nothing has varied yet (s2 t = 0), 1 or 0 as the trend alone is there or
+        isn't. The second term is computed in logarithms, so that it doesn't overflow.
     """
     d, mu_, v, t = floats(distance), floats(mu), floats(variance), floats(years)
-    spread = np.sqrt(v * t)
-    reflected = np.exp(-2.0 * mu_ * d / v + log_ndtr((mu_ * t - d) / spread))
-    return np.minimum(1.0, ndtr((-d - mu_ * t) / spread) + reflected)
+    sure = v * t == 0.0
+    spread, noise = np.sqrt(np.where(sure, 1.0, v * t)), np.where(sure, 1.0, v)
+    reflected = np.exp(-2.0 * mu_ * d / noise + log_ndtr((mu_ * t - d) / spread))
+    chance = np.minimum(1.0, ndtr((-d - mu_ * t) / spread) + reflected)
+    return np.where(sure, d + np.minimum(0.0, mu_ * t) <= 0.0, chance)[()]
 
 
 def chance_ever(distance: Numbers, mu: Numbers, variance: Numbers) -> FloatArray:

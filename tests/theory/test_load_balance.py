@@ -55,6 +55,9 @@ def test_that_a_new_harmful_allele_is_fixed_as_stated(ne, s, h, diffused, exactl
 
 def test_that_genomic_mutation_gives_the_stated_load():
     assert_allclose(load_balance.load_from_mutation(1.0, [0.05, 0.1, 0.25]), [9, 4, 1], rtol=1e-13)
+    loci, u = 1000, 1e-7  # U counts both copies: 2 loci u; the sum over loci is the second route
+    summed = load_balance.load_at_balance(np.full(loci, u), 0.5, 0.25).masked
+    assert_allclose(load_balance.load_from_mutation(2 * loci * u, 0.25), summed, rtol=1e-5)
 
 
 @pytest.mark.parametrize(

@@ -49,6 +49,16 @@ def test_that_a_steep_decline_does_not_overflow():
     assert quasi.chance_ever(50.0, -5.0, 0.01) == 1.0
 
 
+def test_that_without_chance_the_trend_alone_decides():
+    found = quasi.chance_by(
+        [0.0, 1.0, 1.0, 1.0, 0.0], [0.1, -0.1, -0.1, 0.0, 0.1], 0.0, [5, 9, 11, 9, 0]
+    )
+    assert list(found) == [1.0, 0.0, 1.0, 0.0, 1.0]
+    assert list(quasi.chance_by([0.0, 1.0], -0.1, 0.04, 0.0)) == [1.0, 0.0]
+    nearly = quasi.chance_by(1.0, -0.1, 1e-7, [9, 11])
+    assert_allclose(nearly, [0.0, 1.0], atol=1e-12)
+
+
 def test_that_no_distance_is_there_already():
     assert_allclose(quasi.chance_by(0.0, [-0.1, 0.0, 0.1], 0.04, 10), 1.0, rtol=1e-14)
     assert_allclose(quasi.mean_time_if_reached([0.0, 0.0, 1.0], [0.1, 0.0, 0.0]), [0, 0, np.inf])
