@@ -20,7 +20,7 @@ from PySide6.QtWidgets import (
 from rescue_planner import places
 from rescue_planner.desk import theme
 
-OWN_PAGES = ("start", "known", "case")
+PAGES = ("start", "known", "case", "plans", "compare")
 ACTED_ON = (QAbstractButton, QLineEdit, QComboBox, QPlainTextEdit)
 FULLEST = "ground-bird"
 
@@ -42,7 +42,7 @@ def _shown(area: QWidget, kinds: tuple[type, ...]) -> list[QWidget]:
     ]
 
 
-@pytest.mark.parametrize("page", OWN_PAGES)
+@pytest.mark.parametrize("page", PAGES)
 def test_that_everything_that_can_be_acted_on_has_a_name(window, page) -> None:
     _full_case(window)
     window.show_page(page)
@@ -50,7 +50,7 @@ def test_that_everything_that_can_be_acted_on_has_a_name(window, page) -> None:
     assert nameless == []
 
 
-@pytest.mark.parametrize("page", OWN_PAGES)
+@pytest.mark.parametrize("page", PAGES)
 def test_that_names_of_numbers_carry_their_unit(window, page) -> None:
     window.show_page(page)
     numbers = [
@@ -62,7 +62,7 @@ def test_that_names_of_numbers_carry_their_unit(window, page) -> None:
                for one in numbers)  # fmt: skip
 
 
-@pytest.mark.parametrize("page", OWN_PAGES)
+@pytest.mark.parametrize("page", PAGES)
 @pytest.mark.parametrize("scale", [1.0, 2.0])
 def test_that_targets_are_at_least_24_pixels(window, page, scale) -> None:
     _full_case(window)
@@ -76,7 +76,7 @@ def test_that_targets_are_at_least_24_pixels(window, page, scale) -> None:
     assert small == []
 
 
-@pytest.mark.parametrize("page", OWN_PAGES)
+@pytest.mark.parametrize("page", PAGES)
 def test_that_everything_can_be_reached_by_keyboard(window, page) -> None:
     window.show_page(page)
     out_of_reach = [
@@ -128,7 +128,7 @@ def _area_of(widget: QWidget) -> QScrollArea | None:
     return None
 
 
-@pytest.mark.parametrize("page", OWN_PAGES)
+@pytest.mark.parametrize("page", PAGES)
 @pytest.mark.parametrize("scale", [1.0, 2.0])
 def test_that_no_text_is_cut_off(qtbot, window, page, scale) -> None:
     _full_case(window)

@@ -9,7 +9,6 @@ from PySide6.QtGui import QGuiApplication, QKeyEvent, QKeySequence
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QComboBox,
-    QHBoxLayout,
     QHeaderView,
     QLabel,
     QLineEdit,
@@ -19,6 +18,7 @@ from PySide6.QtWidgets import (
 )
 
 from rescue_planner.desk import theme
+from rescue_planner.desk.flow import FlowLayout
 from rescue_planner.desk.widgets import button, text
 from rescue_planner.projection.results import Comparison
 from rescue_planner.projection.table_words import read_years, usual_years, years_outside
@@ -159,12 +159,10 @@ class ValuesAtYears(QWidget):
         self.rows.addItems([words for _, words in ROWS])
         self.rows.setAccessibleName("What a row of the table is")
         self.rows.setMinimumHeight(theme.TARGET)
-        top = QHBoxLayout()
-        top.setSpacing(theme.UNIT)
+        top = FlowLayout()  # at large text the parts stand under one another
         beside: tuple[QWidget, ...] = (label, self.edit, self.rows, self.copy_button)
         for widget in beside:
             top.addWidget(widget)
-        top.addStretch(1)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(theme.HALF)
