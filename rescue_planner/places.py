@@ -1,13 +1,12 @@
-"""Where things lie, and what must be set before numpy or numba is imported."""
+"""Where things lie, and what must be set before numpy or numba is imported.
+
+Imported before the first paint, so what only some functions need is imported in them.
+"""
 
 from __future__ import annotations
 
-import hashlib
 import os
-import tempfile
 from pathlib import Path
-
-import platformdirs
 
 from rescue_planner import __version__
 
@@ -39,11 +38,15 @@ def scenarios() -> Path:
 
 def user_state() -> Path:
     """Return the user's folder for recent files and recovery copies (not created here)."""
+    import platformdirs
+
     return Path(platformdirs.user_state_dir(_APP, appauthor=False))
 
 
 def user_documents() -> Path:
     """Return where a file dialog starts."""
+    import platformdirs
+
     return Path(platformdirs.user_documents_dir())
 
 
@@ -53,6 +56,10 @@ def kernel_cache() -> Path:
     Its name holds the version and a hash of all kernel sources, since a compiled kernel does not
     notice a change in another one that it calls; numba itself keeps machines apart.
     """
+    import hashlib
+
+    import platformdirs
+
     whole = hashlib.sha256()
     for source in sorted((_PACKAGE / "kernels").glob("*.py")):
         whole.update(source.name.encode() + b"\0" + source.read_bytes())
@@ -70,6 +77,8 @@ def prepare_kernel_cache() -> str | None:
     str or None
         The folder, or nothing where none can be written: kernels then compile in memory.
     """
+    import tempfile
+
     folder = kernel_cache()
     try:
         folder.mkdir(parents=True, exist_ok=True)
