@@ -26,6 +26,11 @@ def main(argv: Sequence[str] | None = None) -> int:
             f"One case at a time, please: got {len(arguments)}. See: rescue-planner --help\n"
         )
         return USAGE
+    if arguments and _mistyped(arguments[0]):
+        sys.stderr.write(
+            f"There is no command or case “{arguments[0]}”. See: rescue-planner --help\n"
+        )
+        return USAGE
     if find_spec("PySide6") is None:
         sys.stderr.write(
             "The desk needs PySide6, which is not installed: install it with "
@@ -35,6 +40,11 @@ def main(argv: Sequence[str] | None = None) -> int:
     from rescue_planner.desk.app import open_desk
 
     return open_desk(Path(arguments[0]) if arguments else None)
+
+
+def _mistyped(word: str) -> bool:
+    """Return whether a word is no file and not written like one, as in `chekc`."""
+    return word.replace("-", "").isalpha() and not Path(word).exists()
 
 
 if __name__ == "__main__":

@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 import argparse
+import re
 import shutil
 import sys
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from datetime import UTC, datetime
 from pathlib import Path
-from typing import TYPE_CHECKING, NoReturn
+from typing import TYPE_CHECKING, NoReturn, TextIO
 
 from rescue_planner import __version__, places
 from rescue_planner.case.file import CaseFileError, load
@@ -19,7 +20,8 @@ if TYPE_CHECKING:
     from rescue_planner.case.document import Case
     from rescue_planner.projection.results import Depth
 
-DONE, PROBLEMS, USAGE = 0, 1, 2
+DONE, PROBLEMS, USAGE, STOPPED = 0, 1, 2, 130
+_CONTROL = re.compile(r"[\x00-\x1f\x7f-\x9f]+")
 CAUTION = (
     "These results describe what would follow if the stated assumptions held. "
     "The decision rests with the responsible authorities."
@@ -39,13 +41,16 @@ def parser() -> argparse.ArgumentParser:
     """Return the definition of the commands."""
     whole = _Parser(
         prog="rescue-planner",
+        allow_abbrev=False,
         description="Plan the genetic rescue of a small, isolated, inbred population. "
         "Without a command, `rescue-planner [CASE]` opens the desk.",
         epilog=CAUTION,
     )
     whole.add_argument("--version", action="version", version=f"Rescue Planner {__version__}")
     commands = whole.add_subparsers(dest="command", metavar="run | check | examples", required=True)
-    run = commands.add_parser("run", help="project the plans of a case and write the files")
+    run = commands.add_parser(
+        "run", help="project the plans of a case and write the files", allow_abbrev=False
+    )
     run.add_argument("case", metavar="CASE", type=Path)
     run.add_argument("--to", metavar="FOLDER", type=Path, required=True, help="where files go")
     run.add_argument("--depth", metavar="expected,exact", help="depths of projection, by comma")
@@ -54,9 +59,13 @@ def parser() -> argparse.ArgumentParser:
     run.add_argument("--replicates", metavar="N", type=int, help="simulated runs per plan")
     run.add_argument("--seed", metavar="S", type=int, help="seed of chance")
     run.add_argument("--workers", metavar="W", type=int, help="how many run side by side")
-    check = commands.add_parser("check", help="print problems and remarks with their paths")
+    check = commands.add_parser(
+        "check", help="print problems and remarks with their paths", allow_abbrev=False
+    )
     check.add_argument("case", metavar="CASE", type=Path)
-    examples = commands.add_parser("examples", help="list the invented cases that ship")
+    examples = commands.add_parser(
+        "examples", help="list the invented cases that ship", allow_abbrev=False
+    )
     examples.add_argument("--copy-to", metavar="FOLDER", type=Path, help="copy them there")
     return whole
 
@@ -77,21 +86,33 @@ def main(argv: Sequence[str] | None = None) -> int:
         return _complain(str(error), PROBLEMS)
     except InvalidCase as error:
         return _print_problems(error.problems)
+    except KeyboardInterrupt:
+        return _complain("Stopped. A folder without record.json holds an unfinished run.", STOPPED)
 
 
 def _complain(sentence: str, code: int) -> int:
-    sys.stderr.write(f"{sentence}\n")
+    _write(sys.stderr, sentence)
     return code
 
 
 def _print_problems(problems: Sequence[Problem]) -> int:
     for problem in problems:
-        sys.stderr.write(f"{problem.path or 'case'}: {problem.text}\n")
+        _write(sys.stderr, f"{problem.path or 'case'}: {problem.text}")
     return PROBLEMS
 
 
 def _say(sentence: str) -> None:
-    sys.stdout.write(f"{sentence}\n")
+    _write(sys.stdout, sentence)
+
+
+def _write(stream: TextIO, sentence: str) -> None:
+    """Write a sentence on one line; characters the stream cannot hold come as escapes.
+
+    Names in a case are somebody else's text: their control characters do not reach a terminal.
+    """
+    line = _CONTROL.sub(" ", sentence)
+    encoding = getattr(stream, "encoding", None) or "utf-8"
+    stream.write(f"{line.encode(encoding, 'backslashreplace').decode(encoding)}\n")
 
 
 def _run(asked: argparse.Namespace) -> int:
@@ -101,8 +122,8 @@ def _run(asked: argparse.Namespace) -> int:
     from rescue_planner.projection.remarks import every_remark
 
     started = datetime.now(UTC)
-    case = _read(asked.case)
     depths = _depths(asked.depth)
+    case = _read(asked.case)
     case = _with_run(case, asked)
     if asked.what_if is not None:
         if asked.what_if not in [one.name for one in case.what_ifs]:
@@ -167,7 +188,10 @@ def _with_run(case: Case, asked: argparse.Namespace) -> Case:
             continue
         if option < least:
             raise _Usage(f"--{field} must be at least {least}, got {option}.")
-        case = set_value(case, f"run.{field}", option).case
+        try:
+            case = set_value(case, f"run.{field}", option).case
+        except InvalidCase as invalid:
+            raise _Usage(f"--{field} {invalid.problems[0].text}") from invalid
     if asked.workers is not None and asked.workers < 1:
         raise _Usage(f"--workers must be at least 1, got {asked.workers}.")
     return case
@@ -181,16 +205,28 @@ def _plans(case: Case, text: str | None) -> tuple[str, ...] | None:
     if text is None:
         return None
     names = [plan.name for plan in case.plans]
-    letters = {mark(i).letter: name for i, name in enumerate(names)}
-    chosen = [NO_RELEASES]
-    if text.strip() in names:
-        return (NO_RELEASES, text.strip())
-    for part in (piece.strip() for piece in text.split(",")):
-        name = part if part in names else letters.get(part.upper())
+    known = {mark(i).letter.casefold(): name for i, name in enumerate(names)}
+    known |= {name.strip().casefold(): name for name in names}
+    known |= {name.strip(): name for name in names}  # a name in its own spelling comes first
+    pieces, chosen = text.split(","), [NO_RELEASES]
+    while pieces:
+        name, used = _first_plan(pieces, known)
         if name is None:
-            raise _Usage(f"The case has no plan “{part}”; it has: {', '.join(names)}.")
+            asked = pieces[0].strip()
+            raise _Usage(f"The case has no plan “{asked}”; it has: {'; '.join(names)}.")
         chosen.append(name)
+        pieces = pieces[used:]
     return tuple(dict.fromkeys(chosen))
+
+
+def _first_plan(pieces: Sequence[str], known: Mapping[str, str]) -> tuple[str | None, int]:
+    """Return the plan that the first pieces name, and how many: a name may hold commas."""
+    for count in range(len(pieces), 0, -1):
+        asked = ",".join(pieces[:count]).strip()
+        name = known.get(asked) or known.get(asked.casefold())
+        if name is not None:
+            return name, count
+    return None, 0
 
 
 def _check(asked: argparse.Namespace) -> int:

@@ -81,6 +81,8 @@ def check_no_releases(raw: Raw) -> Iterator[Problem]:
 
 def check_references(raw: Raw) -> Iterator[Problem]:
     """Yield every donor that is used but not described, and frequencies not said."""
+    if not isinstance(raw.get("donors", []), list | None):
+        return  # no list of donors can be read: that is the one problem to tell
     donors = names(raw, "donors")
     known = set(donors)
     for path, name in _donors_used(raw):
