@@ -29,20 +29,6 @@ _PROSE = frozenset(
     | {"question", "decided_by", "by_date", "goal", "other_causes_of_decline", "disease_status"}
     | {"what", "owner", "reason", "asked_by", "date", "path", "unit"}
 )
-# Fields whose own words read better than their name in the file.
-_NAMES = {
-    "fst_form": "Form of FST",
-    "effective_size_follows_adults": "Ne follows the adults",
-    "how": "Inbreeding cost acts by",
-    "form": "Mating system",
-    "when": "Measure read",
-    "then": "Action",
-    "drifts": "Donor drifts",
-    "kind": "Wild or captive",
-    "who_is_counted": "Who is counted",
-    "by_date": "Decide by",
-    "years_apart": "Years apart",
-}
 
 
 @dataclass(frozen=True, slots=True)
@@ -165,7 +151,7 @@ def _last(at: Path) -> str:
 def _name(what: Input | None, at: Path) -> str:
     field = _last(at)
     if what is None:
-        return _NAMES.get(field, field.replace("_", " ").capitalize())
+        return field.replace("_", " ").capitalize()
     name = what.name
     if at[-1] == field and len(at) > 1 and _is_key(what, at):
         name = f"{name}: {field}"

@@ -21,5 +21,9 @@ def given(value: float) -> Quantity:
     return Quantity(best=value)
 
 
-Name = Annotated[str, Input("Name", "", "What this is called; names of one kind differ.")]
-DonorName = Annotated[str, Input("Donor", "", "The name of a donor of this case.")]
+Name = Annotated[
+    str, Input("Name", "", "What this is called; no two of one kind have the same name.")
+]
+DonorName = Annotated[
+    str, Input("Donor", "", "Which of the donors of this case the animals come from.")
+]

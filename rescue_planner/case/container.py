@@ -85,7 +85,7 @@ def _members(archive: zipfile.ZipFile, entries: list[zipfile.ZipInfo]) -> dict[s
     for entry in entries:
         name = entry.orig_filename  # as written: zipfile itself changes odd names
         if name.casefold() in seen:
-            raise ContainerError(f"it holds “{name}” twice")
+            raise ContainerError(f"it holds “{_shown(name)}” twice")
         seen.add(name.casefold())
         if name == TABLES:
             continue  # the folder itself
@@ -102,8 +102,13 @@ def _check_name(name: str) -> None:
     if name in (CASE, LOG):
         return
     if not (name.startswith(TABLES) and is_table_name(name.removeprefix(TABLES))):
-        shown = name if len(name) <= 80 else name[:79] + "…"
-        raise ContainerError(f"it holds “{shown!s}”, which is no part of a rescue case")
+        raise ContainerError(f"it holds “{_shown(name)}”, which is no part of a rescue case")
+
+
+def _shown(name: str) -> str:
+    """Return a member's name for one line of a sentence."""
+    plain = "".join(letter if letter.isprintable() else "?" for letter in name)
+    return plain if len(plain) <= 80 else plain[:79] + "…"
 
 
 def _read(archive: zipfile.ZipFile, entry: zipfile.ZipInfo, most: int) -> bytes:
@@ -112,8 +117,10 @@ def _read(archive: zipfile.ZipFile, entry: zipfile.ZipInfo, most: int) -> bytes:
         while chunk := member.read(_CHUNK):
             held += chunk
             if len(held) > most:
-                raise ContainerError(f"“{entry.orig_filename}” in it is too large")
+                raise ContainerError(f"“{_shown(entry.orig_filename)}” in it is too large")
             packed_well = len(held) > MOST_TIMES_PACKED * max(entry.compress_size, 1)
             if len(held) > FREE_BYTES and packed_well:
-                raise ContainerError(f"“{entry.orig_filename}” in it unpacks to far too much")
+                raise ContainerError(
+                    f"“{_shown(entry.orig_filename)}” in it unpacks to far too much"
+                )
     return bytes(held)

@@ -26,18 +26,44 @@ def _sd(name: str, meaning: str) -> Input:
 class FirstBreeding(Part):
     """Age at first breeding by sex."""
 
-    female: Annotated[Quantity, _age("First breeding, females", "Age when females first breed.")]
-    male: Annotated[Quantity, _age("First breeding, males", "Age when males first breed.")]
+    female: Annotated[
+        Quantity,
+        _age(
+            "First breeding, females",
+            "Age at which females first breed; from then on they count as adults.",
+        ),
+    ]
+    male: Annotated[
+        Quantity,
+        _age(
+            "First breeding, males",
+            "Age at which males first breed; from then on they count as adults.",
+        ),
+    ]
 
 
 class YearlySurvival(Part):
     """Survival through one year, by class."""
 
-    first_year: Annotated[Quantity, _survival("First-year survival", "From birth to age 1.")]
-    subadult: Annotated[
-        Quantity, _survival("Subadult survival", "From age 1 until the first breeding age.")
+    first_year: Annotated[
+        Quantity,
+        _survival(
+            "First-year survival",
+            "Share of the newborn young that are alive at the next census, at age 1.",
+        ),
     ]
-    adult: Annotated[Quantity, _survival("Adult survival", "From the first breeding age on.")]
+    subadult: Annotated[
+        Quantity,
+        _survival(
+            "Subadult survival",
+            "Share of young animals, from age 1 to the first breeding age, that live through a "
+            "year.",
+        ),
+    ]
+    adult: Annotated[
+        Quantity,
+        _survival("Adult survival", "Share of animals of breeding age that live through a year."),
+    ]
 
 
 class Young(Part):
@@ -45,14 +71,21 @@ class Young(Part):
 
     mean: Annotated[
         Quantity | None,
-        Input("Young per breeding female", "young a year", "Mean number of young.", at_least=0),
+        Input(
+            "Young per breeding female",
+            "young a year",
+            "Mean number of young that a female which breeds has in a year; numbers around it "
+            "follow a Poisson distribution.",
+            at_least=0,
+        ),
     ] = None
     counts: Annotated[
         FrozenMap[Quantity] | None,
         Input(
             "Chance of each number of young",
             "probability",
-            "The chance of each number of young; they sum to 1.",
+            "The chance that a female which breeds has just this number of young in a year; the "
+            "chances sum to 1.",
             at_least=0,
             at_most=1,
         ),
@@ -69,13 +102,22 @@ class Young(Part):
 class Mating(Part):
     """Who mates with whom."""
 
-    form: Literal["pairs", "harems", "open"] = "open"
+    form: Annotated[
+        Literal["pairs", "harems", "open"],
+        Input(
+            "Mating system",
+            "",
+            "Who mates with whom: lasting or yearly pairs, harems held by some males, or any "
+            "male for each young.",
+        ),
+    ] = "open"
     share_of_males_breeding: Annotated[
         Quantity,
         Input(
             "Share of males breeding",
             "share, 0 to 1",
-            "Share of the adult males that hold a harem.",
+            "Share of the adult males that hold a harem, at least one; used where the mating "
+            "system is harems.",
             at_least=0,
             at_most=1,
         ),
@@ -85,32 +127,44 @@ class Mating(Part):
         Input(
             "Unequal success of males",
             "coefficient of variation",
-            "How unequal the males' chances are; 0 is equal.",
+            "How unequal the males’ chances to sire young are; 0 means that all are equal.",
             at_least=0,
             at_most=10,
         ),
     ] = Field(default_factory=lambda: given(0))
-    stay_together: StrictBool = False
+    stay_together: Annotated[
+        StrictBool,
+        Input("Pairs stay together", "", "Whether a pair stays together while both live."),
+    ] = False
 
 
 class YearlySd(Part):
     """How much rates differ between years."""
 
-    first_year: Annotated[Quantity, _sd("First-year survival, SD", "Between years.")] = Field(
-        default_factory=lambda: given(0)
-    )
-    subadult: Annotated[Quantity, _sd("Subadult survival, SD", "Between years.")] = Field(
-        default_factory=lambda: given(0)
-    )
-    adult: Annotated[Quantity, _sd("Adult survival, SD", "Between years.")] = Field(
-        default_factory=lambda: given(0)
-    )
+    first_year: Annotated[
+        Quantity,
+        _sd(
+            "First-year survival, SD",
+            "How much first-year survival differs between good and bad years.",
+        ),
+    ] = Field(default_factory=lambda: given(0))
+    subadult: Annotated[
+        Quantity,
+        _sd(
+            "Subadult survival, SD",
+            "How much subadult survival differs between good and bad years.",
+        ),
+    ] = Field(default_factory=lambda: given(0))
+    adult: Annotated[
+        Quantity,
+        _sd("Adult survival, SD", "How much adult survival differs between good and bad years."),
+    ] = Field(default_factory=lambda: given(0))
     young: Annotated[
         Quantity,
         Input(
             "Young, SD relative to the mean",
             "share of the mean",
-            "How much the number of young differs between years.",
+            "How much the mean number of young differs between good and bad years.",
             at_least=0,
             at_most=5,
         ),
@@ -125,14 +179,24 @@ class LostShare(Part):
     """Share of each class that a die-off takes."""
 
     first_year: Annotated[
-        Quantity, _lost("First-year animals lost", "Share of animals in their first year that die.")
+        Quantity,
+        _lost(
+            "First-year animals lost",
+            "Share of the animals in their first year that a die-off kills, besides the usual "
+            "deaths.",
+        ),
     ] = Field(default_factory=lambda: given(0))
-    subadult: Annotated[Quantity, _lost("Subadults lost", "Share of subadults that die.")] = Field(
-        default_factory=lambda: given(0)
-    )
-    adult: Annotated[Quantity, _lost("Adults lost", "Share of adults that die.")] = Field(
-        default_factory=lambda: given(0)
-    )
+    subadult: Annotated[
+        Quantity,
+        _lost(
+            "Subadults lost",
+            "Share of the subadults that a die-off kills, besides the usual deaths.",
+        ),
+    ] = Field(default_factory=lambda: given(0))
+    adult: Annotated[
+        Quantity,
+        _lost("Adults lost", "Share of the adults that a die-off kills, besides the usual deaths."),
+    ] = Field(default_factory=lambda: given(0))
 
 
 class DieOff(Part):
@@ -161,15 +225,26 @@ class LifeCycle(Part):
     """A year in the life of the species, counted just before breeding."""
 
     first_breeding_age: FirstBreeding
-    last_age: Annotated[Quantity, _age("Last age", "The oldest age; it breeds, then dies.")]
+    last_age: Annotated[
+        Quantity,
+        _age("Last age", "The oldest age: animals that reach it breed once more, then die."),
+    ]
     yearly_survival: YearlySurvival
-    survival_measured: Literal["here_now", "unrelated_parents"] = "here_now"
+    survival_measured: Annotated[
+        Literal["here_now", "unrelated_parents"],
+        Input(
+            "First-year survival was measured",
+            "",
+            "Whether first-year survival was measured in this population as it is now, or in "
+            "young of unrelated parents.",
+        ),
+    ] = "here_now"
     share_of_females_breeding: Annotated[
         Quantity,
         Input(
             "Share of females breeding",
             "share a year",
-            "Share of the adult females that breed in a year.",
+            "Share of the adult females that have young in an ordinary year.",
             at_least=0,
             at_most=1,
         ),
@@ -177,17 +252,32 @@ class LifeCycle(Part):
     young_per_breeding_female: Young
     females_among_young: Annotated[
         Quantity,
-        Input("Females among young", "share, 0 to 1", "Share of females.", at_least=0, at_most=1),
+        Input(
+            "Females among young",
+            "share, 0 to 1",
+            "Share of females among the young at birth.",
+            at_least=0,
+            at_most=1,
+        ),
     ] = Field(default_factory=lambda: given(0.5))
     mating: Mating = Mating()
-    crowding: Literal["ceiling", "gradual"] = "ceiling"
+    crowding: Annotated[
+        Literal["ceiling", "gradual"],
+        Input(
+            "Crowding",
+            "",
+            "How the carrying capacity acts: as a ceiling on adults, or by fewer young that live "
+            "as adults grow in number.",
+        ),
+    ] = "ceiling"
     yearly_sd: YearlySd = YearlySd()
     survival_young_correlation: Annotated[
         Quantity,
         Input(
             "Correlation of survival and young",
             "Spearman’s rho",
-            "Whether good years for survival are good years for breeding.",
+            "Whether good years for survival are good years for breeding too: 1 always, 0 no "
+            "link, −1 the other way round.",
             at_least=-1,
             at_most=1,
         ),
@@ -198,7 +288,7 @@ class LifeCycle(Part):
         Input(
             "Fewest adults",
             "adults",
-            "Below this the population counts as lost.",
+            "A population that ever has fewer adults counts as lost.",
             at_least=1,
             whole=True,
         ),
@@ -228,7 +318,8 @@ class InbreedingLoad(Part):
         Input(
             "Lethal equivalents, young per female",
             "diploid lethal equivalents",
-            "Cost of the mother’s inbreeding in the number of her young.",
+            "Cost of the mother’s inbreeding in the number of her young, which falls by "
+            "exp(−(B/2) F).",
             at_least=0,
             at_most=60,
             published="3.94 (fecundity, wild mammals and birds)",
@@ -242,4 +333,12 @@ class InbreedingCost(Part):
     """What inbreeding costs, and how it is modelled."""
 
     lethal_equivalents_diploid: InbreedingLoad = InbreedingLoad()
-    how: Literal["by_inbreeding", "by_load_loci"] = "by_inbreeding"
+    how: Annotated[
+        Literal["by_inbreeding", "by_load_loci"],
+        Input(
+            "Inbreeding cost acts by",
+            "",
+            "Whether the cost follows each animal’s inbreeding, or comes from simulated harmful "
+            "alleles.",
+        ),
+    ] = "by_inbreeding"

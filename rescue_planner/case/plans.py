@@ -30,25 +30,49 @@ def _default(value: float) -> Quantity:
 class Who(Part):
     """The animals of one release."""
 
-    females: Annotated[Quantity, _animals("Females", "Females released each time.")] = _default(0)
-    males: Annotated[Quantity, _animals("Males", "Males released each time.")] = _default(0)
+    females: Annotated[Quantity, _animals("Females", "Females let go in each of the releases.")] = (
+        _default(0)
+    )
+    males: Annotated[Quantity, _animals("Males", "Males let go in each of the releases.")] = (
+        _default(0)
+    )
     age: Annotated[
         Quantity | None,
-        Input("Age", "years", "Age of the animals.", at_least=1, at_most=200, whole=True),
+        Input(
+            "Age",
+            "years",
+            "Age of the animals at release; only simulated animals use it.",
+            at_least=1,
+            at_most=200,
+            whole=True,
+        ),
     ] = None
 
 
 class When(Part):
     """The years of a release."""
 
-    first_year: Annotated[Quantity, _year("First year", "Year of the first release.")]
+    first_year: Annotated[Quantity, _year("First year", "The year of the first of these releases.")]
     every_years: Annotated[
         Quantity,
-        Input("Every", "years", "Years from one release to the next.", at_least=1, whole=True),
+        Input(
+            "Every",
+            "years",
+            "Years from one of these releases to the next.",
+            at_least=1,
+            whole=True,
+        ),
     ] = _default(1)
     times: Annotated[
         Quantity,
-        Input("Times", "releases", "How often.", at_least=1, at_most=1000, whole=True),
+        Input(
+            "Times",
+            "releases",
+            "How many releases there are in all.",
+            at_least=1,
+            at_most=1000,
+            whole=True,
+        ),
     ] = _default(1)
 
 
@@ -75,7 +99,7 @@ class Afterwards(Part):
         Input(
             "Breeding relative to residents",
             "times",
-            "Breeding success of a surviving released animal; 1 is like a resident.",
+            "How much a released animal that lives takes part in breeding; 1 is like a resident.",
             at_least=0,
             at_most=100,
             published="0.7 (0.2–1.5); above 1 is possible",
@@ -89,10 +113,22 @@ class ReleaseCost(Part):
     """What a release costs, in the case's currency."""
 
     each_animal: Annotated[
-        Quantity, Input("Cost of each animal", "currency", "For each animal.", at_least=0)
+        Quantity,
+        Input(
+            "Cost of each animal",
+            "currency",
+            "What each released animal costs: capture, health checks, transport, release.",
+            at_least=0,
+        ),
     ] = _default(0)
     each_event: Annotated[
-        Quantity, Input("Cost of each event", "currency", "For each release.", at_least=0)
+        Quantity,
+        Input(
+            "Cost of each event",
+            "currency",
+            "What each release costs, however many animals it holds.",
+            at_least=0,
+        ),
     ] = _default(0)
 
 
@@ -105,7 +141,11 @@ class RuleRelease(Part):
     loan_years: Annotated[
         Quantity | None,
         Input(
-            "On loan for", "years", "Animals go back after so many years.", at_least=1, whole=True
+            "On loan for",
+            "years",
+            "Years after which the animals go back to the donor; left out, they stay.",
+            at_least=1,
+            whole=True,
         ),
     ] = None
     cost: ReleaseCost = ReleaseCost()
@@ -131,7 +171,7 @@ class Steady(Part):
         Input(
             "Newcomers that breed",
             "animals per generation",
-            "Effective newcomers in each generation.",
+            "Newcomers that breed in each generation, half of them females.",
             at_least=0,
             at_most=100_000,
             published="1 to 10 per generation as a rule of thumb; more where numbers fluctuate",
@@ -140,9 +180,13 @@ class Steady(Part):
             caution="Animals that breed, not animals released.",
         ),
     ]
-    from_year: Annotated[Quantity | None, _year("From", "First year; left out, the start.")] = None
+    from_year: Annotated[
+        Quantity | None,
+        _year("From", "The first year in which newcomers come; left out, the start year."),
+    ] = None
     to_year: Annotated[
-        Quantity | None, _year("To", "Last year, itself included; left out, for good.")
+        Quantity | None,
+        _year("To", "The last year in which newcomers come; left out, they come for good."),
     ] = None
 
 
@@ -150,25 +194,59 @@ class Rule(Part):
     """When a measure passes a bound: stop, or release."""
 
     name: Name
-    when: str
-    above: Annotated[Quantity | None, Input("Above", "measure’s unit", "Acts above this.")] = None
-    below: Annotated[Quantity | None, Input("Below", "measure’s unit", "Acts below this.")] = None
+    when: Annotated[str, Input("Measure read", "", "The quantity that the rule looks at.")]
+    above: Annotated[
+        Quantity | None,
+        Input("Above", "measure’s unit", "The rule acts where the measure is above this."),
+    ] = None
+    below: Annotated[
+        Quantity | None,
+        Input("Below", "measure’s unit", "The rule acts where the measure is below this."),
+    ] = None
     surveys: Annotated[
         Quantity,
-        Input("Surveys in a row", "surveys", "How many must agree.", at_least=1, whole=True),
+        Input(
+            "Surveys in a row",
+            "surveys",
+            "How many surveys running must find the measure beyond the bound before the rule acts.",
+            at_least=1,
+            whole=True,
+        ),
     ] = _default(1)
     survey_every_years: Annotated[
-        Quantity, Input("Survey every", "years", "Years between surveys.", at_least=1, whole=True)
+        Quantity,
+        Input(
+            "Survey every", "years", "Years from one survey to the next.", at_least=1, whole=True
+        ),
     ] = _default(1)
     survey_sd: Annotated[
-        Quantity, Input("Survey error", "SD, measure’s unit", "Error of a survey.", at_least=0)
+        Quantity,
+        Input(
+            "Survey error",
+            "SD, measure’s unit",
+            "Standard deviation of a survey’s error around the true value.",
+            at_least=0,
+        ),
     ] = _default(0)
     delay_years: Annotated[
-        Quantity, Input("Delay", "years", "Years until the action.", at_least=0, whole=True)
+        Quantity,
+        Input(
+            "Delay",
+            "years",
+            "Years from the last of these surveys until the rule’s action takes place.",
+            at_least=0,
+            whole=True,
+        ),
     ] = _default(0)
-    then: Literal["stop", "release"]
+    then: Annotated[
+        Literal["stop", "release"],
+        Input("Action", "", "What the rule does: stop all releases for good, or make one more."),
+    ]
     at_most: Annotated[
-        Quantity, Input("At most", "times", "How often it may act.", at_least=1, whole=True)
+        Quantity,
+        Input(
+            "At most", "times", "How many times the rule may act in all.", at_least=1, whole=True
+        ),
     ] = _default(1)
     release: RuleRelease | None = None
 
@@ -176,20 +254,38 @@ class Rule(Part):
 class OtherAction(Part):
     """Something else done for the population: habitat, predators, feeding."""
 
-    what: Annotated[str, Input("What", "", "What is done.")]
-    year: Annotated[Quantity, _year("Year", "First year.")]
+    what: Annotated[str, Input("What", "", "What is done for the population besides releases.")]
+    year: Annotated[Quantity, _year("Year", "The first year in which the action takes effect.")]
     until_year: Annotated[
-        Quantity | None, _year("Until", "Last year, itself included; left out, for good.")
+        Quantity | None,
+        _year(
+            "Until", "The last year in which the action takes effect; left out, it lasts for good."
+        ),
     ] = None
     carrying_capacity_times: Annotated[
         Quantity,
-        Input("Carrying capacity times", "times", "Factor on it.", above=0, at_most=1000),
+        Input(
+            "Carrying capacity times",
+            "times",
+            "The carrying capacity is multiplied by this, and with it the effective size.",
+            above=0,
+            at_most=1000,
+        ),
     ] = _default(1)
     first_year_survival_times: Annotated[
         Quantity,
-        Input("First-year survival times", "times", "Factor on it.", at_least=0, at_most=1000),
+        Input(
+            "First-year survival times",
+            "times",
+            "First-year survival is multiplied by this.",
+            at_least=0,
+            at_most=1000,
+        ),
     ] = _default(1)
-    cost: Annotated[Quantity, Input("Cost", "currency", "Once.", at_least=0)] = _default(0)
+    cost: Annotated[
+        Quantity,
+        Input("Cost", "currency", "What the action costs, once, in its first year.", at_least=0),
+    ] = _default(0)
 
 
 class Plan(Part):
@@ -201,7 +297,8 @@ class Plan(Part):
         Input(
             "Effective size (Ne) under this plan",
             "animals per generation",
-            "Left out, the recipient’s.",
+            "The size of an ideal population that loses diversity as fast as this one would "
+            "under the plan; left out, the recipient’s.",
             at_least=1,
         ),
     ] = None

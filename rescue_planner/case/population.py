@@ -32,7 +32,10 @@ class Recipient(Part):
     """The small, isolated population that may receive animals."""
 
     name: Name
-    who_is_counted: str | None = None
+    who_is_counted: Annotated[
+        str | None,
+        Input("Who is counted", "", "Which animals the numbers count, and when in the year."),
+    ] = None
     adults: Annotated[
         Quantity,
         Input(
@@ -45,14 +48,20 @@ class Recipient(Part):
     ]
     adult_females: Annotated[
         Quantity | None,
-        Input("Adult females", "animals", "Females among the adults counted.", at_least=0),
+        Input(
+            "Adult females",
+            "animals",
+            "Females among the adults counted; left out, half of them.",
+            at_least=0,
+        ),
     ] = None
     breeding_females: Annotated[
         Quantity | None,
         Input(
             "Breeding females",
             "animals per generation",
-            "Females that leave young in a generation.",
+            "Females that leave young in a generation; newcomers are measured against them. Left "
+            "out, half of the adults.",
             at_least=0,
         ),
     ] = None
@@ -61,7 +70,8 @@ class Recipient(Part):
         Input(
             "Breeding males",
             "animals per generation",
-            "Males that leave young in a generation.",
+            "Males that leave young in a generation; newcomers are measured against them. Left "
+            "out, half of the adults.",
             at_least=0,
         ),
     ] = None
@@ -79,7 +89,15 @@ class Recipient(Part):
             caution="Per generation, not per breeding season. Never enter the census here.",
         ),
     ]
-    effective_size_follows_adults: StrictBool = False
+    effective_size_follows_adults: Annotated[
+        StrictBool,
+        Input(
+            "Ne follows the adults",
+            "",
+            "Whether effective size rises and falls with the number of adults, instead of being "
+            "held; it needs a life cycle.",
+        ),
+    ] = False
     gene_diversity: GeneDiversity
     reference_gene_diversity: Annotated[
         Quantity,
@@ -93,10 +111,18 @@ class Recipient(Part):
             caution="Use the same markers as for the recipient.",
         ),
     ]
-    markers: Markers | None = None
+    markers: Annotated[
+        Markers | None,
+        Input("Markers", "", "What the gene diversities were measured or reckoned from."),
+    ] = None
     carrying_capacity: Annotated[
         Quantity | None,
-        Input("Carrying capacity", "adults", "Adults the place can hold.", above=0),
+        Input(
+            "Carrying capacity",
+            "adults",
+            "The most adults that the place can hold; left out, numbers are not limited.",
+            above=0,
+        ),
     ] = None
     isolated_since: Annotated[
         Quantity | None,
@@ -117,7 +143,7 @@ class Recipient(Part):
         Input(
             "Donor ancestry at the start",
             "share of gene copies",
-            "Share of the recipient's gene copies that already came from this donor.",
+            "Share of the recipient’s gene copies that already came from this donor.",
             at_least=0,
             at_most=1,
         ),
@@ -127,8 +153,18 @@ class Recipient(Part):
 class Screen(Part):
     """Answers about a donor that bear on the risk of mixing; unknown is its own answer."""
 
-    same_species: YesNoUnknown | None = None
-    fixed_chromosome_differences: YesNoUnknown | None = None
+    same_species: Annotated[
+        YesNoUnknown | None,
+        Input("Same species", "", "Whether donor and recipient are the same species."),
+    ] = None
+    fixed_chromosome_differences: Annotated[
+        YesNoUnknown | None,
+        Input(
+            "Fixed chromosome differences",
+            "",
+            "Whether the chromosomes of the two populations always differ in number or form.",
+        ),
+    ] = None
     years_apart: Annotated[
         Quantity | None,
         Input(
@@ -143,7 +179,14 @@ class Screen(Part):
             "without harm.",
         ),
     ] = None
-    environment_differs: Literal["no", "some", "much", "unknown"] | None = None
+    environment_differs: Annotated[
+        Literal["no", "some", "much", "unknown"] | None,
+        Input(
+            "Environment differs",
+            "",
+            "How much the places differ in which the two populations live.",
+        ),
+    ] = None
     generations_apart: Annotated[
         Quantity | None,
         Input(
@@ -159,7 +202,10 @@ class Donor(Part):
     """A population that could give animals."""
 
     name: Name
-    kind: Literal["wild", "captive"] | None = None
+    kind: Annotated[
+        Literal["wild", "captive"] | None,
+        Input("Wild or captive", "", "Whether the donor lives in the wild or in human care."),
+    ] = None
     adults: Annotated[
         Quantity | None,
         Input("Adults", "animals", "Adults of the donor alive before breeding.", above=0),
@@ -173,26 +219,43 @@ class Donor(Part):
             at_least=1,
         ),
     ] = None
-    drifts: StrictBool = False
+    drifts: Annotated[
+        StrictBool,
+        Input(
+            "Drifts",
+            "",
+            "Whether the donor loses gene diversity by its own drift; otherwise it is held "
+            "constant.",
+        ),
+    ] = False
     gene_diversity: GeneDiversity
     fst_to_recipient: Annotated[
         Quantity,
         Input(
             "FST to the recipient",
             "FST, 0 to below 1",
-            "How far apart donor and recipient are genetically.",
+            "How far apart donor and recipient are genetically: 0 is one population.",
             at_least=0,
             below=1,
-            caution="Say which form it is: Hudson's, or Nei's for two populations.",
+            caution="Say which form it is: Hudson’s, or Nei’s for two populations.",
         ),
     ]
-    fst_form: FstForm = "hudson"
+    fst_form: Annotated[
+        FstForm,
+        Input(
+            "Form of FST",
+            "",
+            "Whether the FST values of this donor are of Hudson’s form or Nei’s for two "
+            "populations.",
+        ),
+    ] = "hudson"
     fst_to_donors: Annotated[
         FrozenMap[Quantity],
         Input(
             "FST to another donor",
             "FST, 0 to below 1",
-            "How far apart two donors are genetically.",
+            "How far apart two donors are genetically, in the form of FST chosen for this donor; "
+            "left out, it is assumed.",
             at_least=0,
             below=1,
         ),
@@ -202,18 +265,28 @@ class Donor(Part):
         Input(
             "Most removed a year",
             "animals a year",
-            "The most animals that the donor's managers allow to be taken in one year.",
+            "The most animals that the donor’s managers allow to be taken in one year.",
             at_least=0,
             caution="Removal limits are set by those responsible for the donor population.",
         ),
     ] = None
     fewest_left: Annotated[
         Quantity | None,
-        Input("Fewest left", "adults", "Adults that must stay in the donor.", at_least=0),
+        Input(
+            "Fewest left",
+            "adults",
+            "Adults that must stay in the donor, by the word of those responsible for it.",
+            at_least=0,
+        ),
     ] = None
     carrying_capacity: Annotated[
         Quantity | None,
-        Input("Carrying capacity", "adults", "Adults the donor's place can hold.", above=0),
+        Input(
+            "Carrying capacity",
+            "adults",
+            "The most adults that the donor’s place can hold.",
+            above=0,
+        ),
     ] = None
     life_cycle: Literal["same"] | LifeCycle | None = None
     lethal_equivalents_diploid: InbreedingLoad | None = None
@@ -230,20 +303,27 @@ class Donor(Part):
     trait_mean_difference: Annotated[
         Quantity,
         Input(
-            "Trait mean against the recipient's",
+            "Trait mean against the recipient’s",
             "phenotypic SD",
-            "The donor's mean of the trait minus the recipient's.",
+            "The donor’s mean of the trait minus the recipient’s.",
         ),
     ] = Field(default_factory=lambda: given(0))
     additive_variance: Annotated[
         Quantity | None,
         Input(
             "Additive variance",
-            "recipient's phenotypic variance at the start = 1",
-            "The donor's additive genetic variance of the trait; left out, it follows from the "
+            "recipient’s phenotypic variance at the start = 1",
+            "The donor’s additive genetic variance of the trait; left out, it follows from the "
             "gene diversities.",
             at_least=0,
         ),
     ] = None
     screen: Screen | None = None
-    disease_status: str | None = None
+    disease_status: Annotated[
+        str | None,
+        Input(
+            "Disease status",
+            "",
+            "What is known of the donor’s health; the projection does not use it.",
+        ),
+    ] = None

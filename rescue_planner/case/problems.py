@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Iterator
 from itertools import chain, islice
 
@@ -28,6 +29,7 @@ from rescue_planner.case.wording import worded
 __all__ = ["InvalidCase", "Problem", "read_case"]
 
 MOST_LISTED = 1000
+_LONG_NAME = re.compile(r"(“[^”]{80})[^”]+”")
 
 _CHECKS: tuple[Callable[[Raw], Iterator[Problem]], ...] = (
     check_names,
@@ -66,11 +68,17 @@ def read_case(raw: object) -> Case:
     if surplus is not None:  # one sentence about the plans; the rest is still checked
         raw = {**raw, "plans": [{"name": NO_RELEASES}], "what_ifs": []}
     case, problems = _typed(raw)
-    across = (problem for check in _CHECKS for problem in check(raw))
+    across = (_readable(problem) for check in _CHECKS for problem in check(raw))
     found = tuple(_listed(_once(chain([surplus] if surplus else (), problems, across))))
     if case is None or found:
         raise InvalidCase(found)
     return case
+
+
+def _readable(problem: Problem) -> Problem:
+    """Return a problem whose text is one line, with long names cut."""
+    text = _LONG_NAME.sub(r"\1…”", " ".join(problem.text.split()))
+    return problem if text == problem.text else Problem(problem.path, text)
 
 
 def _typed(raw: Raw) -> tuple[Case | None, Iterator[Problem]]:

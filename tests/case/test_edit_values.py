@@ -46,7 +46,7 @@ def test_that_a_value_is_set_and_said(wave):
             3,
             "Set females (release 1 of plan “Two pairs every fourth year”) to 3",
         ),
-        ("donors[1].fst_form", "hudson", "Set fst form (donor “St. Anne [pens]”) to “hudson”"),
+        ("donors[1].fst_form", "hudson", "Set form of FST (donor “St. Anne [pens]”) to “hudson”"),
         ("donors[0].fst_to_recipient", 0.3, "Set FST to the recipient (donor “Upper Fen”) to 0.3"),
         ("donors[0].drifts", True, "Set drifts (donor “Upper Fen”) to yes"),
         ("title", "Voles", "Set title to “Voles”"),

@@ -63,6 +63,19 @@ def test_that_every_input_is_described_in_the_schema():
     assert missing == []
 
 
+def test_that_every_field_is_defined_in_one_plain_sentence():
+    defined = dict(every_input(Case))
+    leaves = re.findall(r"^\| `([^`]+)` \|", field_table(), re.MULTILINE)
+    parts = {"format", "version", "donors[*].life_cycle"}
+    for path in leaves:
+        whole = f"| `{path}` | The whole part |" in field_table()
+        assert path in defined or path in parts or whole, path
+    for path, one in defined.items():
+        assert one.meaning.endswith("."), path
+        assert len(one.meaning.split()) >= 4, path
+        assert "'" not in one.name + one.unit + one.meaning + one.caution + one.published, path
+
+
 def test_that_the_committed_table_of_fields_is_current():
     assert renewed(PAGE) == PAGE
 

@@ -67,7 +67,7 @@ def _shrunk(raw: Raw, plan: Raw, size: float, where: str) -> Iterator[Problem]:
         return
     spans = _spans(plan, start, generation)
     # The product changes only where an action comes into force or ends.
-    changes = {math.floor(one.begin + _NEAR) for one in spans}
+    changes = {math.floor(one.begin + _NEAR) for one in spans if math.isfinite(one.begin)}
     changes |= {math.ceil(one.end - _NEAR) for one in spans if math.isfinite(one.end)}
     for step in sorted(changes):
         factor = math.prod(one.factor for one in spans if one.holds_in(step))
