@@ -40,6 +40,11 @@ def spoken_place(raw: Any, path: Path) -> str:  # noqa: ANN401 - whatever the fi
     return f"{name} ({holders})" if holders else name
 
 
+def spoken_part(raw: Any, path: Path) -> str:  # noqa: ANN401
+    """Return words for an entry of a list, as in `release 1 of plan “Trickle”`."""
+    return _holders(raw, path) or spoken_place(raw, path)
+
+
 def _entry(step: object) -> str:
     return f"entry {step + 1}" if isinstance(step, int) else f"“{step}”"
 

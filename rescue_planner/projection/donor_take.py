@@ -16,6 +16,7 @@ from rescue_planner.case.life import LifeCycle
 from rescue_planner.case.plans import Plan
 from rescue_planner.case.population import Donor
 from rescue_planner.case.remarks import Remark
+from rescue_planner.theory.elasticity import donor_numbers
 from rescue_planner.theory.life_table import growth
 
 
@@ -42,11 +43,10 @@ def ceiling_course(
 
     Each year the donor grows by `rate` up to `ceiling`, then loses what is taken.
     """
-    left, now = {}, adults
-    for year in range(min(taken), max(taken) + 1):
-        now = max(0.0, min(ceiling, rate * now) - taken.get(year, 0.0))
-        left[year] = now
-    return left
+    years = range(min(taken), max(taken) + 1)
+    removed = [taken.get(year, 0.0) for year in years]
+    numbers = donor_numbers(adults, rate, ceiling, removed)[1:]
+    return dict(zip(years, numbers.tolist(), strict=True))
 
 
 def donor_takes(case: Case) -> Iterator[DonorTake]:

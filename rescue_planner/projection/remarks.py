@@ -8,6 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rescue_planner.case.document import Case
+from rescue_planner.case.filled import step_of
 from rescue_planner.case.remarks import Remark, remarks
 from rescue_planner.projection.chain_path import LARGEST_COPIES
 from rescue_planner.projection.compare import plan_courses
@@ -36,6 +37,7 @@ def _on_course(case: Case, path: str, course: Course) -> Iterator[Remark]:
     yield from _apart(course, path)
     yield from _possible(course, path)
     yield from _numbers(case, course, path)
+    yield from _at_once(case, course, path)
     name = course.setup.plan
     most = max((step.ne[0] for step in course.steps), default=0.0)
     if case.loci and copies(float(most)) > LARGEST_COPIES:
@@ -54,6 +56,27 @@ def _on_course(case: Case, path: str, course: Course) -> Iterator[Remark]:
         )
 
 
+def _at_once(case: Case, course: Course, path: str) -> Iterator[Remark]:
+    """Find rules that add a release in the first step to those the calendar already has there."""
+    given = course.setup
+    plan = case.plan(given.plan)
+    years = [year for release in plan.releases for year in release.years()]
+    if not any(step_of(year, given.start_year, given.generation_years) == 0 for year in years):
+        return
+    acted = {event.rule for event in course.book.events if event.t == 0}
+    for place, rule in enumerate(plan.rules):
+        delay = float(rule.delay_years.best)
+        soon = step_of(given.start_year + delay, given.start_year, given.generation_years) == 0
+        if rule.then == "release" and rule.name in acted and soon:
+            yield Remark(
+                "rule-at-once",
+                f"{path}.rules[{place}]",
+                f"The rule “{rule.name}” of {plan.name} acts at the start already, so its animals "
+                "come in the same generation as the first release of the calendar. If it is meant "
+                "for later, give it a delay or another bound.",
+            )
+
+
 def _year(course: Course, t: int) -> str:
     return f"{course.setup.start_year + t * course.setup.generation_years:g}"
 
@@ -63,8 +86,9 @@ def _apart(course: Course, path: str) -> Iterator[Remark]:
     given = course.setup
     own = course.values["gene_diversity"][0]
     for i, donor in enumerate(given.donors):
-        between = course.between[:, 0, i]
-        least = np.maximum(own, course.donors[:, 0, i, i])
+        between = np.array([at[0, i] for at in course.between])
+        donors = np.array([at[0, i, i] for at in course.donors])
+        least = np.maximum(own, donors)
         below = np.flatnonzero(between < least - _SLACK)
         if below.size and below[0] > 0:
             t = int(below[0])
@@ -95,10 +119,11 @@ def _possible(course: Course, path: str) -> Iterator[Remark]:
     if not given.donors:
         return
     count = len(given.donors)
-    whole = np.empty((course.between.shape[0], count + 1, count + 1))
+    between = np.stack([at[0] for at in course.between])
+    whole = np.empty((between.shape[0], count + 1, count + 1))
     whole[:, 0, 0] = course.values["gene_diversity"][0]
-    whole[:, 0, 1:] = whole[:, 1:, 0] = course.between[:, 0]
-    whole[:, 1:, 1:] = course.donors[:, 0]
+    whole[:, 0, 1:] = whole[:, 1:, 0] = between
+    whole[:, 1:, 1:] = np.stack([at[0] for at in course.donors])
     least = np.linalg.eigvalsh(1.0 - whole / given.h_reference[0])[:, 0]
     wrong = np.flatnonzero(least < -1e-9)
     if wrong.size and wrong[0] > 0:
@@ -114,7 +139,7 @@ def _possible(course: Course, path: str) -> Iterator[Remark]:
 def _numbers(case: Case, course: Course, path: str) -> Iterator[Remark]:
     """Survival that met 1, decline while Ne is held, and a population that is gone."""
     given = course.setup
-    capped = np.flatnonzero(course.capped[:, 0])
+    capped = np.flatnonzero([at[0] for at in course.capped])
     if capped.size:
         yield Remark(
             "survival-capped",

@@ -141,8 +141,9 @@ def test_that_500_damaged_files_open_or_are_refused_in_words(
 
 
 def test_that_a_case_of_odd_values_everywhere_is_refused_in_words() -> None:
+    chance = random.Random(SEED)
     for place in _places(full()):
-        for odd in ODD:
+        for odd in chance.sample(ODD, 16):
             raw: Any = full()
             holder = raw
             for step in place[:-1]:

@@ -123,3 +123,17 @@ def test_that_what_is_left_out_says_what_ne_does(build, life, follows):
 def test_that_the_exact_depth_says_nothing_without_a_locus(build):
     assert leaves_out(build(), "exact") == ()
     assert leaves_out(build(), "simulated") == ()
+
+
+@pytest.mark.parametrize(
+    ("first_year", "bound", "delay", "said"),
+    [(2027, 0.1, 0, True), (2027, 0.1, 8, False), (2031, 0.1, 0, False), (2027, 0.9, 0, False)],
+)
+def test_that_a_rule_that_adds_a_release_to_the_first_one_is_named(
+    build, first_year, bound, delay, said
+):
+    plan = pulse(2, first_year=first_year)
+    rule = {"name": "more", "when": "inbreeding", "above": bound, "then": "release"}
+    release = {"donor": "Mainland", "who": {"females": 2}}
+    plan["rules"] = [{**rule, "delay_years": delay, "release": release}]
+    assert ("rule-at-once" in keys(build([plan]))) is said

@@ -14,6 +14,7 @@ from rescue_planner.case.faults import InvalidCase, Problem
 from rescue_planner.case.paths import Path, drop, format_path, get, parse_path, put, steps_of
 from rescue_planner.case.problems import read_case
 from rescue_planner.case.quantity import Quantity
+from rescue_planner.case.spoken import spoken_part
 
 Raw = dict[str, Any]
 Value = float | str | bool | Quantity | Mapping[str, Any] | list[Any]
@@ -101,7 +102,8 @@ def removed(raw: Raw, path: str | Path, place: int) -> Raw:
     for i, what_if in enumerate(raw.get("what_ifs") or ()):
         for k, change in enumerate(what_if.get("changes") or ()):
             if parse_path(change["path"])[: len(listed) + 1] == (*listed, place):
-                text = f"The what-if “{what_if['name']}” changes {format_path((*listed, place))}: "
+                gone = spoken_part(raw, (*listed, place))
+                text = f"The what-if “{what_if['name']}” changes the {gone}: "
                 raise refuse(f"what_ifs[{i}].changes[{k}].path", text + "remove that change first.")
     left = drop(raw, (*listed, place))
     if not get(left, listed) and len(listed) > 1:

@@ -21,6 +21,7 @@ from rescue_planner.case.edits.base import (
 from rescue_planner.case.paths import Path, drop, format_path, get, parse_path, put
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.case.raw import to_raw
+from rescue_planner.case.spoken import spoken_part
 from rescue_planner.case.tolerant import mapping, parts, value
 
 Number = float | Quantity
@@ -75,7 +76,7 @@ def remove_donor(case: Case, name: str) -> Edit:
     if value(mapping(raw, *ancestry[:2]).get(name)):
         used.append(ancestry)
     used += [path for path, steps in _what_if_paths(raw) if _is_entry(steps, name)]
-    _refuse_while_used(used, f"the donor “{name}”")
+    _refuse_while_used(raw, used, f"the donor “{name}”")
     for path in list(_entries_by_donor(raw, name)):
         raw = _without_entry(raw, path)
     return done(f"Remove donor “{name}”", removed(raw, "donors", place))
@@ -135,7 +136,7 @@ def remove_locus(case: Case, name: str) -> Edit:
     """
     raw = to_raw(case)
     place = index_of(raw, "loci", name)
-    _refuse_while_used(list(_measure_uses(raw, "locus", name)), f"the tracked locus “{name}”")
+    _refuse_while_used(raw, list(_measure_uses(raw, "locus", name)), f"the tracked locus “{name}”")
     return done(f"Remove tracked locus “{name}”", removed(raw, "loci", place))
 
 
@@ -231,8 +232,8 @@ def _what_if_paths(raw: Raw) -> Iterator[tuple[Path, Path]]:
             yield ("what_ifs", place, "changes", which, "path"), parse_path(change["path"])
 
 
-def _refuse_while_used(used: list[Path], what: str) -> None:
+def _refuse_while_used(raw: Raw, used: list[Path], what: str) -> None:
     if used:
-        places = ", ".join(format_path(path) for path in used)
-        text = f"It stays while {what} is used here: {places}. Change these first."
+        places = ", ".join(dict.fromkeys(spoken_part(raw, path) for path in used))
+        text = f"It stays while {what} is used by {places}: change these first."
         raise refuse(format_path(used[0]), text)

@@ -8,7 +8,7 @@ from rescue_planner.case import fields
 from rescue_planner.case.document import Case
 from rescue_planner.case.filled import step_of, steps
 from rescue_planner.case.noting.base import Remark
-from rescue_planner.case.paths import steps_of
+from rescue_planner.case.paths import format_path, steps_of
 from rescue_planner.case.plans import Plan, RuleRelease
 from rescue_planner.case.raw import to_raw
 
@@ -33,10 +33,30 @@ def on_plans(case: Case) -> Iterator[Remark]:
                 "plan is held to it. Removal limits are set by those responsible for the donor "
                 "population.",
             )
+    yield from _lethal(case, givers)
     for place, plan in enumerate(case.plans):
         yield from _releases(case, plan, f"plans[{place}]")
     yield from _targets(case)
     yield from _what_ifs(case)
+
+
+def _lethal(case: Case, givers: set[str]) -> Iterator[Remark]:
+    """Yield donors all of whose animals have a genotype that leaves no young in the recipient."""
+    for place, locus in enumerate(case.loci):
+        for donor in sorted(givers):
+            share = locus.donor_frequency.get(donor)
+            if share is None or float(share.best) not in (0.0, 1.0):
+                continue
+            only, fitness = ("AA", 0) if float(share.best) == 1.0 else ("aa", 2)
+            if float(locus.fitness[fitness].best) == 0.0:
+                path = format_path(("loci", place, "donor_frequency", donor))
+                yield Remark(
+                    "donor-all-unfit",
+                    path,
+                    f"Every animal from {donor} is {only} at {locus.name}, and the fitness of "
+                    f"{only} is 0 in the recipient: young of two such newcomers would not live, "
+                    "and only crosses count. Check the frequency and the order of the genotypes.",
+                )
 
 
 def _what_ifs(case: Case) -> Iterator[Remark]:
