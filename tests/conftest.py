@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+import atexit
 import json
 import os
+import shutil
 import tempfile
 from pathlib import Path
 
@@ -35,6 +37,7 @@ def _use_test_screen() -> None:
     if os.environ.get("QT_QPA_PLATFORM", "offscreen") != "offscreen":
         return  # somebody wants to see the windows
     folder = Path(tempfile.mkdtemp(prefix="rescue-planner-screen-"))
+    atexit.register(shutil.rmtree, folder, ignore_errors=True)
     file = folder / "screen.json"
     file.write_text(json.dumps(_SCREEN), encoding="utf-8")
     os.environ["QT_QPA_PLATFORM"] = f"offscreen:configfile={file}"

@@ -67,8 +67,9 @@ def inbreeding_cost_in_words(case: Case) -> str:
     diploid = float(load.first_year.best)
     at = [100 * float(survival_factor(f, diploid)) for f in (0.125, 0.25)]
     words = (
-        f"{diploid:g} diploid ({diploid / 2:g} haploid) in the first year: young of F = 0.125 "
-        f"survive {at[0]:.0f} %, of F = 0.25 {at[1]:.0f} % as well as outbred young."
+        f"{diploid:g} diploid ({diploid / 2:g} haploid) in the first year: young of half sibs "
+        f"(F = 0.125) survive {at[0]:.0f} %, of full sibs (F = 0.25) {at[1]:.0f} % as well as "
+        "outbred young."
     )
     mother = float(load.young_per_female.best)
     if mother:

@@ -48,6 +48,7 @@ class Explainer(QWidget):
         self._lay_out()
         desk.explain.asked.connect(self.show_path)
         desk.document.changed.connect(self._refresh)
+        desk.live.updated.connect(self._refresh)
         desk.document.replaced.connect(self.clear)
 
     def _lay_out(self) -> None:
@@ -69,6 +70,13 @@ class Explainer(QWidget):
         outer.setContentsMargins(0, 0, 0, 0)
         outer.addWidget(scrolled(inner))
         self.clear()
+
+    def show_page(self, question: str, about: str) -> None:
+        """Say what a page answers, until something on it is chosen."""
+        self.clear()
+        self._say(self._heading, question)
+        self._say(self._meaning, about)
+        self._say(self._bounds, OPENING)
 
     def clear(self) -> None:
         """Explain nothing."""
@@ -118,6 +126,12 @@ class Explainer(QWidget):
         self._say(self._heading, measures.title(key))
         self._say(self._unit, measures.unit(key))
         self._say(self._meaning, measure.meaning)
+        from rescue_planner.desk.measure_words import measure_words
+
+        document, comparison = self._desk.document, self._desk.live.comparison
+        told = measure_words(document.case if document.has_case else None, comparison, key)
+        self._say(self._bounds, told.targets)
+        self._say(self._published, f"{told.depth}\n\n{told.source}".strip())
         self._origin.show_value("", None)
 
     def _show_words(self, path: str) -> None:
@@ -129,8 +143,14 @@ class Explainer(QWidget):
         self._say(self._meaning, ((model.__doc__ if model else "") or OPENING).splitlines()[0])
         self._origin.show_value("", None)
 
-    def _refresh(self) -> None:
+    def _is_measure(self) -> bool:
+        return measures.split(self._path)[0] in {one.key for one in measures.MEASURES}
+
+    def _refresh(self, _: object = None) -> None:
         held = None
+        if self._is_measure():
+            self._show_measure(self._path)
+            return
         if self._path and self._desk.document.has_case:
             try:
                 held = value_at(self._desk.document.case, self._path)

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from typing import Any
 
 from PySide6.QtCore import QEvent
-from PySide6.QtGui import QResizeEvent
+from PySide6.QtGui import QKeyEvent, QKeySequence, QResizeEvent
 from PySide6.QtWidgets import (
     QBoxLayout,
     QLabel,
@@ -34,6 +34,18 @@ def sentence_of(problems: Sequence[Problem]) -> str:
 def definition_of(path: str) -> Input | None:
     """Return the definition of the input at a written path, if it is one."""
     return definition_at(parse_path(path))
+
+
+def asks_to_undo(event: QEvent) -> bool:
+    """Return whether a line that has the focus is asked if it wants undo or redo for itself."""
+    return (
+        event.type() == QEvent.Type.ShortcutOverride
+        and isinstance(event, QKeyEvent)
+        and (
+            event.matches(QKeySequence.StandardKey.Undo)
+            or event.matches(QKeySequence.StandardKey.Redo)
+        )
+    )
 
 
 class FieldRow(QWidget):

@@ -20,7 +20,7 @@ from PySide6.QtWidgets import (
 
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
-from rescue_planner.desk.field_base import Bound, FieldRow, sentence_of
+from rescue_planner.desk.field_base import Bound, FieldRow, asks_to_undo, sentence_of
 from rescue_planner.desk.number_field import NumberEdit, NumberField
 
 if TYPE_CHECKING:
@@ -43,7 +43,7 @@ class TextField(Bound):
         make: Callable[[Case, str], Edit] | None = None,
     ) -> None:
         super().__init__(desk, path, label, None)
-        self._make = make
+        self._make, self._shown = make, ""
         self.label = QLabel(self.name)
         self.edit: QLineEdit | QPlainTextEdit = (
             QLineEdit(self) if lines == 1 else QPlainTextEdit(self)
@@ -80,11 +80,17 @@ class TextField(Bound):
                 self.edit.setCursorPosition(0)
             else:
                 self.edit.setPlainText(text)
+        self._shown = text.strip()
         del blocker
+
+    @property
+    def is_clean(self) -> bool:
+        """Whether the text is what the case held when it was last shown or committed."""
+        return self.text().strip() == self._shown
 
     def refresh(self) -> None:
         """Show what the case holds, unless it is being typed over."""
-        if not self.has_problem and not self.edit.hasFocus():
+        if not self.has_problem and (self.is_clean or not self.edit.hasFocus()):
             self._put(str(self.held() or ""))
 
     def revert(self) -> None:
@@ -94,6 +100,9 @@ class TextField(Bound):
 
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
         if watched is self.edit:
+            if asks_to_undo(event) and self.is_clean:
+                event.ignore()  # the window undoes the last edit of the case
+                return True
             if event.type() == QEvent.Type.FocusIn:
                 self.desk.explain.show(self.path)
             elif event.type() == QEvent.Type.FocusOut:
@@ -121,9 +130,11 @@ class TextField(Bound):
             return
         if self._make is None:
             self._commit(typed or None)
-            return
-        make = self._make
-        self._show_problems(self.desk.document.try_edit(lambda case: make(case, typed)))
+        else:
+            make = self._make
+            self._show_problems(self.desk.document.try_edit(lambda case: make(case, typed)))
+        if not self.has_problem:
+            self._shown = typed
 
 
 class ChoiceField(Bound):

@@ -17,6 +17,9 @@ from rescue_planner import places
 
 SIZE = (1280, 720)
 SETTLE_MS = 120
+CASE_SECTIONS = (
+    "Recipient", "Donors", "Life cycle", "Inbreeding cost", "Tracked loci", "Trait", "Targets",
+)  # fmt: skip
 
 
 def main(argv: Sequence[str] | None = None) -> int:
@@ -88,6 +91,7 @@ class Gallery:
 
     def _pages(self, name: str, look: str) -> None:
         from rescue_planner.desk.pages.case import CasePage
+        from rescue_planner.desk.pages.compare import ComparePage
         from rescue_planner.desk.rail import PAGES
 
         for page in PAGES:
@@ -97,12 +101,15 @@ class Gallery:
                 made.area.verticalScrollBar().setValue(0)
             self._settle()
             self._grab(f"{name}--{page.key}--{look}")
+            if isinstance(made, ComparePage):
+                made.body.grab().save(str(self._folder / f"{name}--compare-whole--{look}.png"))
+                self._count += 1
         case_page = self.window.pages["case"]
         if not isinstance(case_page, CasePage):
             return
         self.window.show_page("case")
         self.window.activateWindow()
-        for section in ("Recipient", "Donors", "Life cycle", "Tracked loci", "Targets"):
+        for section in CASE_SECTIONS:
             case_page.go_to(section)
             self._settle()
             self._grab(f"{name}--case-{section.lower().replace(' ', '-')}--{look}")

@@ -16,7 +16,7 @@ from PySide6.QtWidgets import (
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
-from rescue_planner.desk.field_base import Bound, FieldRow
+from rescue_planner.desk.field_base import Bound, FieldRow, asks_to_undo
 from rescue_planner.desk.numbers import range_in_words, read_number, stepped, written
 from rescue_planner.desk.widgets import Link
 
@@ -32,6 +32,13 @@ class NumberEdit(QLineEdit):
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.setMinimumHeight(theme.TARGET)
+
+    def event(self, event: QEvent) -> bool:
+        """Leave undo and redo to the window unless a number is half typed here."""
+        if not self.isModified() and asks_to_undo(event):
+            event.ignore()
+            return True
+        return super().event(event)
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
         steps = {

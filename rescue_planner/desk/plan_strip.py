@@ -4,7 +4,14 @@ from __future__ import annotations
 
 from PySide6.QtCore import QEvent, QPointF, QRect, QRectF, QSignalBlocker, QSize, Qt, QTimer
 from PySide6.QtGui import QColor, QPainter, QPaintEvent, QPen, QResizeEvent
-from PySide6.QtWidgets import QAbstractButton, QButtonGroup, QHBoxLayout, QPushButton, QWidget
+from PySide6.QtWidgets import (
+    QAbstractButton,
+    QBoxLayout,
+    QButtonGroup,
+    QHBoxLayout,
+    QPushButton,
+    QWidget,
+)
 
 from rescue_planner.case.plans import Plan
 from rescue_planner.desk import theme
@@ -17,6 +24,7 @@ from rescue_planner.projection.marks import PlanMark, mark
 SAMPLE = 36
 NAME_WIDTHS = (28, 22, 17, 13, 10, 7, 4, 0)  # in letters; the widest that fits is taken
 MOST_ROWS = 2
+LARGE, MOST_ROWS_LARGE = 1.5, 3  # large text takes a row more before names are shortened
 
 
 class PlanChip(QAbstractButton):
@@ -121,10 +129,7 @@ class PlanStrip(QWidget):
         row.setSpacing(theme.UNIT)
         row.addWidget(self._held, 1)
         row.addWidget(rule(upright=True))
-        row.addWidget(self.years)
-        row.addWidget(self.generations)
-        row.addWidget(rule(upright=True))
-        row.addWidget(self.what_if)
+        row.addLayout(self._sides())
         self._later = QTimer(self)  # fonts of the chips follow the strip's own a moment later
         self._later.setSingleShot(True)
         self._later.setInterval(0)
@@ -136,6 +141,20 @@ class PlanStrip(QWidget):
         desk.document.replaced.connect(self._replaced)
         desk.view.changed.connect(self._view_changed)
         self._view_changed()
+
+    def _sides(self) -> QBoxLayout:
+        """Return switch and what-if, side by side; one above the other where text is large."""
+        switch = QHBoxLayout()
+        switch.setSpacing(theme.UNIT)
+        switch.addWidget(self.years)
+        switch.addWidget(self.generations)
+        self._between = rule(upright=True)
+        self._side = QBoxLayout(QBoxLayout.Direction.LeftToRight)
+        self._side.setSpacing(theme.UNIT)
+        self._side.addLayout(switch)
+        self._side.addWidget(self._between)
+        self._side.addWidget(self.what_if)
+        return self._side
 
     def _switch(self, words: str, axis: str) -> QPushButton:
         made = QPushButton(words)
@@ -189,12 +208,13 @@ class PlanStrip(QWidget):
         if not self.chips or self._held.width() < theme.TARGET:
             return
         row = self.chips[0].sizeHint().height()
+        most = MOST_ROWS_LARGE if self._desk.view.text_scale >= LARGE else MOST_ROWS
         for letters in NAME_WIDTHS:
             for chip in self.chips:
                 chip.letters = letters
                 chip.updateGeometry()  # or the layout keeps the size it knows
             high = self._flow.heightForWidth(self._held.width())
-            if high <= MOST_ROWS * (row + theme.UNIT):
+            if high <= most * (row + theme.UNIT):
                 break
         self._held.updateGeometry()
 
@@ -203,5 +223,9 @@ class PlanStrip(QWidget):
             chip.refresh()
         for made, axis in ((self.years, "years"), (self.generations, "generations")):
             made.setChecked(self._desk.view.axis == axis)
+        large = self._desk.view.text_scale >= LARGE
+        ways = QBoxLayout.Direction
+        self._side.setDirection(ways.TopToBottom if large else ways.LeftToRight)
+        self._between.setVisible(not large)
         self._later.start()
         self.update()

@@ -11,6 +11,8 @@ from PySide6.QtWidgets import QButtonGroup, QPushButton, QVBoxLayout, QWidget
 
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
+from rescue_planner.desk.icons import Icons
+from rescue_planner.desk.view import ViewState
 
 
 @dataclass(frozen=True, slots=True)
@@ -21,6 +23,7 @@ class PageEntry:
     name: str
     question: str
     made_by: str  # class of `rescue_planner.desk.pages.<key>`
+    about: str  # what the explainer says until something on the page is chosen
 
     def make(self, desk: Desk) -> QWidget:
         """Import and build the page."""
@@ -30,9 +33,31 @@ class PageEntry:
 
 
 PAGES = (
-    PageEntry("case", "Case", "Who is in trouble, and what do we know?", "CasePage"),
-    PageEntry("plans", "Plans", "What could we do?", "PlansPage"),
-    PageEntry("compare", "Compare", "What does each plan buy and cost?", "ComparePage"),
+    PageEntry(
+        "case",
+        "Case",
+        "Who is in trouble, and what do we know?",
+        "CasePage",
+        "What is known of the recipient, the donors and the life cycle, each number with its "
+        "range, where it came from, and who says so.",
+    ),
+    PageEntry(
+        "plans",
+        "Plans",
+        "What could we do?",
+        "PlansPage",
+        "Releases and other actions, plan by plan, on the calendar and as sentences. The charts "
+        "beside them show at once what the plan being edited leads to.",
+    ),
+    PageEntry(
+        "compare",
+        "Compare",
+        "What does each plan buy and cost?",
+        "ComparePage",
+        "Every measure for all plans on one scale. Click a chart, or go to it with Tab and the "
+        "Up and Down keys, to read here what it means, how it is computed and what that leaves "
+        "out; Left and Right read all charts at another year.",
+    ),
 )
 
 
@@ -41,7 +66,7 @@ class Rail(QWidget):
 
     chosen = Signal(str)  # key of a page
 
-    def __init__(self, parent: QWidget | None = None) -> None:
+    def __init__(self, view: ViewState, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.setObjectName("rail")
         self.setAttribute(Qt.WidgetAttribute.WA_StyledBackground)
@@ -64,6 +89,7 @@ class Rail(QWidget):
             self.buttons[page.key] = made
             column.addWidget(made)
         column.addStretch(1)
+        self._icons = Icons(view, {made: key for key, made in self.buttons.items()}, "ink")
         self.mark("")
 
     def mark(self, key: str) -> None:

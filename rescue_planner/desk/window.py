@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QByteArray, QEvent, Qt, QTimer
+from PySide6.QtCore import QByteArray, QEvent, QSize, Qt, QTimer
 from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
 from PySide6.QtWidgets import (
     QApplication,
@@ -28,6 +28,7 @@ from rescue_planner.desk.widgets import bring_into_view, rule
 from rescue_planner.desk.work_strip import WorkStrip
 
 NAME = "Rescue Planner"
+FRAME = 32  # what a title bar takes
 
 
 class DeskWindow(QMainWindow):
@@ -62,7 +63,7 @@ class DeskWindow(QMainWindow):
         self._apply_look()
 
     def _lay_out(self) -> None:
-        self.strip, self.rail = PlanStrip(self.desk), Rail()
+        self.strip, self.rail = PlanStrip(self.desk), Rail(self.desk.view)
         self.stack = QStackedWidget()
         self.explainer = Explainer(self.desk)
         self.work = WorkStrip(self.desk)
@@ -85,9 +86,14 @@ class DeskWindow(QMainWindow):
         column.addWidget(self.work)
         self.setCentralWidget(whole)
         self._fit_sides()
-        self.resize(1280, 760)
+        self.resize(self._roomy())
         if self.settings.geometry:
             self.restoreGeometry(QByteArray.fromHex(self.settings.geometry.encode()))
+
+    def _roomy(self) -> QSize:
+        """Return the size the window opens with: whole on a small screen, frame included."""
+        room = self.screen().availableGeometry().size() - QSize(0, FRAME)
+        return QSize(1280, 760).boundedTo(room)
 
     def _connect(self) -> None:
         document, view = self.desk.document, self.desk.view
@@ -115,12 +121,21 @@ class DeskWindow(QMainWindow):
         if key not in self.pages:
             self.pages[key] = self._made(key)
             self.stack.addWidget(self.pages[key])
-        if key != self.current:
-            self.explainer.clear()
+        came = key != self.current
+        if came:
+            entry = next((page for page in PAGES if page.key == key), None)
+            if entry is None:
+                self.explainer.clear()
+            else:
+                self.explainer.show_page(entry.question, entry.about)
         self.current = key
         self.stack.setCurrentWidget(self.pages[key])
         self.rail.mark(key)
         self._show_explainer()
+        if came and self.isVisible():
+            target = _first_focusable(self.pages[key])
+            if target is not None:  # whoever works by keys goes on from here
+                target.setFocus(Qt.FocusReason.ShortcutFocusReason)
 
     def _made(self, key: str) -> QWidget:
         if key == "start":
@@ -241,7 +256,7 @@ class DeskWindow(QMainWindow):
 
     def _fit_sides(self) -> None:
         scale = self.desk.view.text_scale
-        self.rail.setFixedWidth(round(88 * scale) + 8)
+        self.rail.setFixedWidth(round(108 * scale) + 8)
         self.explainer.setFixedWidth(round(WIDTH * (0.6 + 0.4 * scale)))
 
     def _remarks_found(self, _what: object = None) -> None:

@@ -222,5 +222,5 @@ def _afterwards(locus: Locus, course: Course, last: np.intp) -> str:
 def locus_sentences(case: Case, index: int) -> tuple[str, ...]:
     """Return what is said of the locus `case.loci[index]` itself, sentence by sentence."""
     locus = case.loci[index]
-    said = (resting_words(locus), fastest_words(locus), critical_words(case, locus), LEFT_OUT)
+    said = (resting_words(locus), fastest_words(locus), critical_words(case, locus))
     return tuple(itertools.filterfalse(lambda words: not words, said))

@@ -84,9 +84,12 @@ def picture(
     targets = reading.target_marks(case, key)
     bands = reading.fan(comparison, fan_of, key) if fan_of in plans and fan_of else None
     low, high = _extent(comparison, key, targets, fan_of is not None)
-    lines = tuple(_line(comparison, plan, key) for plan in plans if _has(comparison, plan, key))
     decimals = reading.column_places(comparison, key, comparison.plans)
-    empty = "" if any(_has(comparison, p, key) for p in comparison.plans) else why_empty(case, key)
+    computed = any(_has(comparison, plan, key) for plan in comparison.plans)
+    empty = no_input(case, key) if computed else why_empty(case, key)
+    lines = tuple(
+        _line(comparison, plan, key) for plan in plans if not empty and _has(comparison, plan, key)
+    )
     if not empty and not lines:
         empty = "All plans are hidden. Show one in the plan strip above."
     return Picture(
@@ -147,6 +150,16 @@ def _widest(comparison: Comparison, key: str, decimals: int) -> str:
             ends = (float(line.values.min()), float(line.values.max()))
             texts.extend(reading.shown(key, value, decimals) for value in ends)
     return max(texts, key=len)
+
+
+def no_input(case: Case, key: str) -> str:
+    """Return why a measure that has values is no result: nothing was entered for it to show."""
+    if split(key)[0] == "relative_first_year_survival" and case.inbreeding_cost is None:
+        return (
+            "No inbreeding cost entered: survival is taken as that of outbred young. Add the cost "
+            "on the Case page."
+        )
+    return ""
 
 
 def why_empty(case: Case, key: str) -> str:

@@ -6,7 +6,9 @@ from PySide6.QtCore import Qt
 from PySide6.QtWidgets import QAbstractButton, QLabel
 
 from rescue_planner.case.edits import add_donor, set_value
+from rescue_planner.desk.case_page.living import _new_life
 from rescue_planner.desk.fields import CheckField, ChoiceField, NumberField, TextField
+from rescue_planner.desk.locus_notes import LocusNotes
 
 FIELDS = (NumberField, TextField, ChoiceField, CheckField)
 
@@ -94,7 +96,7 @@ def test_that_the_lethal_equivalents_are_echoed_both_ways_with_the_curve(window)
     words = [label.text() for label in _section(window, "Inbreeding cost").findChildren(QLabel)]
     echoed = next(text for text in words if "haploid)" in text)
     assert "7 diploid (3.5 haploid)" in echoed
-    assert "of F = 0.125 survive 65 %, of F = 0.25 42 %" in echoed
+    assert "half sibs (F = 0.125) survive 65 %, of full sibs (F = 0.25) 42 %" in echoed
     assert "Does this look right?" in echoed
 
 
@@ -144,3 +146,41 @@ def test_that_links_lead_to_their_section_by_keyboard(qtbot, window) -> None:
         qtbot.keyClick(page.links[name], Qt.Key.Key_Space)
         top = section.mapTo(page.area.viewport(), section.rect().topLeft()).y()
         assert top < page.area.viewport().height()
+
+
+def _notes(window) -> str:
+    notes = _section(window, "Tracked loci").findChild(LocusNotes)
+    notes.refresh()
+    return notes.words.text()
+
+
+def test_that_a_tracked_locus_tells_equilibria_critical_flow_and_each_plans_own(qtbot, window):
+    qtbot.waitUntil(lambda: window.desk.live.comparison is not None)
+    words = _notes(window)
+    assert "Equilibria of selection alone" in words
+    assert "Selection acts fastest at" in words
+    assert "Critical flow: m = " in words
+    assert "A No releases: no gene flow." in words
+    assert "B Pairs: m = " in words
+
+
+def test_that_the_words_of_a_locus_follow_an_edit_and_a_hidden_plan(qtbot, window) -> None:
+    qtbot.waitUntil(lambda: window.desk.live.comparison is not None)
+    before = _notes(window)
+    document = window.desk.document
+    assert document.try_edit(lambda case: set_value(case, "loci[0].fitness[2]", 0.7)) == ()
+    qtbot.waitUntil(lambda: window.desk.live.comparison is not None)
+    after = _notes(window)
+    assert after != before
+    window.desk.view.set_hidden("Pairs", True)
+    assert "Pairs" not in _notes(window)
+
+
+def test_that_the_life_cycle_tells_growth_and_generation_length(window) -> None:
+    document = window.desk.document
+    assert document.try_edit(_new_life) == ()
+    labels = _section(window, "Life cycle").findChildren(QLabel)
+    words = " ".join(label.text() for label in labels)
+    assert "Growth of the females" in words
+    assert "mean age of mothers in the stable population" in words
+    assert "T entered: 4" in words

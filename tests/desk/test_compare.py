@@ -255,6 +255,21 @@ def test_that_without_loci_there_is_no_locus_group(page, desk):
     assert not page.odds_heading.isVisibleTo(page)
 
 
+def test_that_survival_without_an_inbreeding_cost_is_not_shown_as_a_result(page, desk):
+    assert desk.document.try_edit(lambda c: set_value(c, "inbreeding_cost", None)) == ()
+    desk.live.recompute()
+    page.averages.charts.flush()
+    survival = page.averages.charts.panels[0]
+    assert survival.picture.empty.startswith("No inbreeding cost entered")
+    assert not any("outbred" in head for head in page.values.model.table.header)
+
+
+def test_that_the_locus_group_tells_equilibria_and_each_plans_flow(page, desk):
+    words = page.locus_notes.words.text()
+    assert "Equilibria of selection alone" in words
+    assert all(f"{plan.name}: " in words for plan in desk.document.case.plans)
+
+
 def test_that_targets_are_checked_for_every_plan(page, desk):
     comparison = desk.live.comparison
     table = target_table(desk.document.case, comparison, comparison.plans)

@@ -31,8 +31,8 @@ def test_that_fifty_years_of_four_are_twelve_and_a_half_generations(small) -> No
 def test_that_seven_diploid_are_three_and_a_half_haploid(small) -> None:
     # exp(-3.5 * 0.125) = 0.646 and exp(-3.5 * 0.25) = 0.417 (Morton, Crow & Muller 1956)
     assert inbreeding_cost_in_words(small).startswith(
-        "7 diploid (3.5 haploid) in the first year: young of F = 0.125 survive 65 %, of F = 0.25 "
-        "42 % as well as outbred young."
+        "7 diploid (3.5 haploid) in the first year: young of half sibs (F = 0.125) survive 65 %, "
+        "of full sibs (F = 0.25) 42 % as well as outbred young."
     )
 
 

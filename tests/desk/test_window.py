@@ -14,7 +14,7 @@ from rescue_planner import places
 from rescue_planner.case.edits import set_value
 from rescue_planner.case.file import load
 from rescue_planner.desk import rail
-from rescue_planner.desk.fields import NumberField
+from rescue_planner.desk.fields import NumberField, TextField
 from rescue_planner.desk.pages.case import CasePage
 from rescue_planner.desk.work_strip import CAUTION, time_left
 
@@ -122,6 +122,64 @@ def test_that_no_releases_cannot_be_taken_away(window) -> None:
     problems = window.desk.document.try_edit(lambda case: remove_plan(case, "No releases"))
     assert problems
     assert window.desk.document.case.plans[0].name == "No releases"
+
+
+def test_that_ctrl_z_in_a_field_takes_back_the_last_edits_of_the_case(qtbot, window) -> None:
+    edit = _field(window, NE).edit
+    for number in ("15", "14"):
+        edit.setFocus()
+        edit.selectAll()
+        qtbot.keyClicks(edit, f"{number}\r")
+    held = window.desk.document
+    for left in (15, 16):
+        qtbot.keyClick(edit, Qt.Key.Key_Z, Qt.KeyboardModifier.ControlModifier)
+        assert held.case.recipient.effective_size.best == left
+        assert edit.text() == str(left)
+    qtbot.keyClick(edit, Qt.Key.Key_Y, Qt.KeyboardModifier.ControlModifier)
+    assert edit.text() == "15"
+
+
+def test_that_ctrl_z_takes_back_half_typed_text_before_it_touches_the_case(qtbot, window) -> None:
+    edit = _field(window, NE).edit
+    edit.setFocus()
+    edit.selectAll()
+    qtbot.keyClicks(edit, "1")
+    qtbot.keyClick(edit, Qt.Key.Key_Z, Qt.KeyboardModifier.ControlModifier)
+    assert edit.text() == "16"
+    assert window.desk.document.undo_stack.count() == 0
+
+
+def test_that_ctrl_z_in_a_text_takes_back_the_last_edit_and_shows_it(qtbot, window) -> None:
+    edit = next(
+        one for one in window.pages["case"].findChildren(TextField) if one.path == "recipient.name"
+    ).edit
+    edit.setFocus()
+    edit.selectAll()
+    qtbot.keyClicks(edit, "High Fen\r")
+    assert window.desk.document.case.recipient.name == "High Fen"
+    qtbot.keyClick(edit, Qt.Key.Key_Z, Qt.KeyboardModifier.ControlModifier)
+    assert window.desk.document.case.recipient.name == "Low Meadow"
+    assert edit.text() == "Low Meadow"
+    window.show_page("plans")  # leaving the field puts nothing back
+    assert window.desk.document.case.recipient.name == "Low Meadow"
+
+
+def test_that_a_page_reached_by_its_key_has_the_focus(qtbot, window) -> None:
+    window.rail.buttons["plans"].animateClick()  # what its shortcut does
+    qtbot.waitUntil(lambda: window.current == "plans")
+    focused = QApplication.focusWidget()
+    assert window.pages["plans"].isAncestorOf(focused)
+    assert focused.accessibleName() == "Plans"
+
+
+def test_that_the_explainer_of_a_page_tells_what_it_answers(window) -> None:
+    window.show_page("compare")
+    assert window.explainer._heading.text() == "What does each plan buy and cost?"
+    window.desk.explain.show("gene_diversity_kept")
+    shown = window.explainer
+    assert "office" in shown._bounds.text()  # whose target it is
+    assert "Ne is held at 16" in shown._published.text()
+    assert "Source: Wright 1931" in shown._published.text()
 
 
 def test_that_the_caution_is_always_in_view(window) -> None:

@@ -9,7 +9,7 @@ import pytest
 from rescue_planner.case.problems import read_case
 from rescue_planner.projection import plan_reading, reading, table_words
 from rescue_planner.projection.compare import compare
-from rescue_planner.projection.picture import picture, why_empty
+from rescue_planner.projection.picture import no_input, picture, why_empty
 from rescue_planner.projection.results import Comparison, Series, read_only
 from rescue_planner.projection.value_table import course_table, value_table
 
@@ -199,6 +199,15 @@ def test_that_a_missing_life_cycle_is_said_in_words():
     assert made.lines == ()
     assert "simulated animals" in why_empty(bare, "kinship")
     assert "trait" in why_empty(bare, "trait_lag")
+
+
+def test_that_survival_without_an_inbreeding_cost_is_no_result():
+    bare = marsh(inbreeding_cost=None)
+    made = picture(compare(bare), bare, "relative_first_year_survival", ("No releases",))
+    assert made.empty.startswith("No inbreeding cost entered")
+    assert made.lines == ()
+    assert no_input(bare, "inbreeding") == ""
+    assert no_input(marsh(), "relative_first_year_survival") == ""
 
 
 def test_that_all_plans_hidden_is_said_in_words(case, comparison):

@@ -32,6 +32,7 @@ def _loci(section: Section, case: Case) -> None:
             path = format_path(("loci", i, "donor_frequency", donor.name))
             section.number(path, f"Frequency in {donor.name}")
         section.numbers(f"{at}.mutation_to", f"{at}.mutation_from")
+        section.notes(name)
     section.buttons(("Add a tracked locus", _new_locus))
 
 

@@ -44,8 +44,22 @@ def _life(section: Section, case: Case) -> None:
     section.number(f"{at}.mating.share_of_males_breeding")
     section.number(f"{at}.mating.unequal_success")
     section.choice(f"{at}.crowding", "Crowding", CROWDING)
+    section.line(_growth, "small")
+    section.line(_generation, "small")
     _years(section, case)
     section.buttons(("Remove the life cycle", lambda case: set_value(case, "life_cycle", None)))
+
+
+def _growth(case: Case) -> str:
+    from rescue_planner.projection.life_words import growth_words
+
+    return growth_words(case)
+
+
+def _generation(case: Case) -> str:
+    from rescue_planner.projection.life_words import generation_words
+
+    return generation_words(case)
 
 
 def _years(section: Section, case: Case) -> None:

@@ -26,6 +26,7 @@ from rescue_planner.desk.fields import (
     TextField,
     sentence_of,
 )
+from rescue_planner.desk.locus_notes import LocusNotes
 from rescue_planner.desk.widgets import button, rule, text
 
 if TYPE_CHECKING:
@@ -44,6 +45,11 @@ class SectionPlan:
     build: Callable[[Section, Case], None]
 
 
+def _say(label: QLabel, words: str) -> None:
+    label.setText(words)
+    label.setVisible(bool(words))
+
+
 class Section(QWidget):
     """Heading, fields and lines that follow the case."""
 
@@ -52,6 +58,7 @@ class Section(QWidget):
         self.desk, self._plan = desk, plan
         self._fields: list[Fields] = []
         self._lines: list[tuple[QLabel, Callable[[Case], str]]] = []
+        self._notes: list[LocusNotes] = []
         self._parts: object = None
         self._body: QWidget | None = None
         self._column = QVBoxLayout(self)
@@ -76,18 +83,20 @@ class Section(QWidget):
             self._parts = parts
             self._rebuild(case)
         for label, words in self._lines:
-            label.setText(words(case))
+            _say(label, words(case))
 
     def _rebuild(self, case: Case) -> None:
         focused = QApplication.focusWidget()
         path = focused.property("path") if focused and self.isAncestorOf(focused) else None
         for field in self._fields:
             field.retire()
+        for notes in self._notes:
+            notes.retire()
         if self._body is not None:
             self._column.removeWidget(self._body)
             self._body.hide()
             self._body.deleteLater()
-        self._fields, self._lines = [], []
+        self._fields, self._lines, self._notes = [], [], []
         self._body = QWidget()
         self._rows = QVBoxLayout(self._body)
         self._rows.setContentsMargins(0, theme.HALF, 0, 0)
@@ -138,6 +147,12 @@ class Section(QWidget):
         label = text("", kind)
         self._lines.append((label, words))
         self._rows.addWidget(label)
+
+    def notes(self, locus: str) -> None:
+        """Add what theory says of a tracked locus."""
+        made = LocusNotes(self.desk, lambda _case: (locus,), named=False)
+        self._notes.append(made)
+        self._rows.addWidget(made)
 
     def caution(self, words: str) -> None:
         """Add a standing caution."""

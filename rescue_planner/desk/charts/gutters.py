@@ -87,9 +87,11 @@ class Heading(Gutter):
     def _top(self) -> float:
         return self.look.line_height * (2.15 if self.unit_below else 1.15)
 
-    def _name(self) -> str:
+    def _name(self, *, brief: bool = False) -> str:
+        """Return title and plan; of the plan only its letter where `brief`."""
         assert self.picture is not None
-        return self.picture.title + (f" · {self.short}" if self.short else "")
+        plan = self.short.partition(" ")[0] if brief else self.short
+        return self.picture.title + (f" · {plan}" if plan else "")
 
     def fits(self, width: float) -> bool:
         """Return whether title and unit fit side by side."""
@@ -142,7 +144,10 @@ class Heading(Gutter):
         width, height = self.size().width(), self.look.line_height
         ink, soft = QColor(self.look.colours.ink), QColor(self.look.colours.soft)
         bold = self.look.font(bold=True)
-        name = QFontMetricsF(bold).elidedText(self._name(), Qt.TextElideMode.ElideRight, width)
+        whole = self._name()
+        if QFontMetricsF(bold).horizontalAdvance(whole) > width:
+            whole = self._name(brief=True)
+        name = QFontMetricsF(bold).elidedText(whole, Qt.TextElideMode.ElideRight, width)
         painter.setFont(bold)
         painter.setPen(ink)
         flags = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter

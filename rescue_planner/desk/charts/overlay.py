@@ -13,7 +13,10 @@ from rescue_planner.desk.charts.gutters import GAP, Gutter
 from rescue_planner.projection.placing import Box, quietest
 from rescue_planner.projection.reading import TargetMark, year_text
 
-TARGET_SHARE = 0.66  # of the plot's width, at most, for the words of a target
+
+def bound_words(mark: TargetMark) -> str:
+    """Return a target's bound; whose it is stands in the explainer and the table of targets."""
+    return f"{'≥' if mark.at_least else '≤'} {mark.value:g}"
 
 
 class Ground(Gutter):
@@ -151,16 +154,14 @@ class Overlay(Gutter):
         ]
         painter.drawPolygon(QPolygonF(wedge))
         painter.setBrush(Qt.BrushStyle.NoBrush)
-        metrics = QFontMetricsF(self.look.font())
-        words = metrics.elidedText(
-            mark.words, Qt.TextElideMode.ElideRight, float(self.size().width()) * TARGET_SHARE
-        )
+        words = bound_words(mark)
         wide, tall = self._size_of(words)
         under, over = y + 3, y - tall - 3
         tops = (under, over) if mark.at_least else (over, under)
         beside = (x - wide - 3 * GAP, x + 3 * GAP)
         places = [(x - wide / 2, tops[0]), *((left, y - tall / 2) for left in beside)]
-        places += [(x - wide / 2, tops[1]), (0.0, tops[0]), (1e9, tops[0])]
+        places += [(x - wide / 2, tops[1])]
+        places += [(left, top) for left in beside for top in tops]
         self._write(painter, words, places, self.look.colours.ink)
 
     def _paint_gone(self, painter: QPainter) -> None:

@@ -9,6 +9,7 @@ from rescue_planner.projection import reading
 from rescue_planner.projection.results import DEPTH_NAMES, Comparison
 from rescue_planner.projection.value_table import ValueTable, wrapped
 
+GOAL, NARROW = 40, 12  # letters in a line of a cell
 MET, MISSED = "✓ met", "✗ not met"
 
 
@@ -21,9 +22,9 @@ def target_table(case: Case, comparison: Comparison, plans: tuple[str, ...]) -> 
     names = [wrapped(f"{reading.letter(comparison, plan)} {plan}") for plan in plans]
     body = tuple(
         (
-            _goal(case, number, next(iter(found.values()))),
-            case.targets[number - 1].owner or "not stated",
-            DEPTH_NAMES[depth],
+            wrapped(_goal(case, number, next(iter(found.values()))), GOAL),
+            wrapped(case.targets[number - 1].owner or "not stated"),
+            wrapped(DEPTH_NAMES[depth], NARROW),
             *(_cell(comparison, found.get(plan)) for plan in plans),
         )
         for (number, depth), found in rows.items()

@@ -19,7 +19,10 @@ from rescue_planner.desk.compare.exporting import Exporter
 from rescue_planner.desk.compare.targets import target_table
 from rescue_planner.desk.compare.values import CopyingTable, ValueModel, ValuesAtYears
 from rescue_planner.desk.context import Desk
+from rescue_planner.desk.icons import Icons
+from rescue_planner.desk.locus_notes import LocusNotes, every_locus
 from rescue_planner.desk.widgets import button, rule, scrolled, text
+from rescue_planner.projection.picture import no_input
 from rescue_planner.projection.reading import depths_shown
 from rescue_planner.projection.results import Comparison
 from rescue_planner.projection.table_words import depth_words, event_sentences
@@ -50,6 +53,7 @@ class ComparePage(QWidget):
         self.chooser = MeasureChooser(self)
         self.averages = LiveCharts(desk, "Charts of the average course", self._average_specs)
         self.odds = LiveCharts(desk, "Charts of tracked loci", self._locus_specs)
+        self.locus_notes = LocusNotes(desk, self._loci_shown)
         self.values = ValuesAtYears(self)
         self.targets = CopyingTable("Target checks", self)
         self.target_model = ValueModel(self)
@@ -73,6 +77,14 @@ class ComparePage(QWidget):
         self.measures_button = button("Measures…", said="Choose the measures shown")
         self.measures_button.setCheckable(True)
         self.export_button = button("Export…", said="Export the plans and measures shown")
+        self._icons = Icons(
+            self._desk.view,
+            {
+                self.measures_button: "measures",
+                self.export_button: "export",
+                self.values.copy_button: "copy",
+            },
+        )
 
     def _lay_out(self) -> None:
         top = self.top = QBoxLayout(QBoxLayout.Direction.LeftToRight)
@@ -97,9 +109,10 @@ class ComparePage(QWidget):
         column.addWidget(self.chooser)
         column.addWidget(text(TRUST, "note"))
         below: tuple[QWidget, ...] = (
-            self.averages, self.average_depth, self.odds_heading, self.odds, self.odds_depth,
-            rule(), self.values_heading, self.values, self.targets_heading, self.targets,
-            self.target_notes, self.events_heading, self.events,
+            self.averages, self.average_depth, self.odds_heading, self.odds,
+            self.locus_notes, self.odds_depth, rule(), self.values_heading, self.values,
+            self.targets_heading, self.targets, self.target_notes, self.events_heading,
+            self.events,
         )  # fmt: skip
         for widget in below:
             column.addWidget(widget)
@@ -145,6 +158,11 @@ class ComparePage(QWidget):
         self.chooser.offer(case, comparison)
         shown = [key for key in self.chooser.shown_keys() if _of_locus(key)]
         return specs(shown, plans)
+
+    def _loci_shown(self, case: Case) -> tuple[str, ...]:
+        keys = [split(key) for key in self.chooser.shown_keys()]
+        named = {name for base, name in keys if base in (*LOCUS, "allele_fixed")}
+        return tuple(name for name in every_locus(case) if name in named)
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)
@@ -198,7 +216,8 @@ class ComparePage(QWidget):
         self._stale = False
         self.chooser.offer(document.case, comparison)
         self._show_rest(document.case, comparison)
-        shown = self.chooser.shown_keys()
+        case, keys = document.case, self.chooser.shown_keys()
+        shown = tuple(key for key in keys if not no_input(case, key))
         self.values.show_values(comparison, self.visible_plans(comparison), shown)
 
     def _show_rest(self, case: Case | None, comparison: Comparison | None) -> None:
@@ -217,9 +236,9 @@ class ComparePage(QWidget):
 
     def _optional(self) -> tuple[QWidget, ...]:
         return (
-            self.average_depth, self.odds_heading, self.odds, self.odds_depth, self.events_heading,
-            self.events, self.targets_heading, self.targets, self.target_notes, self.values,
-            self.values_heading,
+            self.average_depth, self.odds_heading, self.odds, self.locus_notes, self.odds_depth,
+            self.events_heading, self.events, self.targets_heading, self.targets,
+            self.target_notes, self.values, self.values_heading,
         )  # fmt: skip
 
     def _show_depths(self, case: Case, comparison: Comparison) -> None:
@@ -236,6 +255,8 @@ class ComparePage(QWidget):
             label.setVisible(bool(depths))
         loci = any(_of_locus(key) for key in shown)
         self.odds.setVisible(loci)
+        self.locus_notes.setVisible(loci)
+        self.locus_notes.refresh()
         self.odds_heading.setVisible(loci)
 
     def _show_events(self, comparison: Comparison) -> None:

@@ -18,7 +18,7 @@ from rescue_planner.projection.results import Comparison
 
 QUESTION = "What could we do?"
 MOST_HEIGHT = 16777215  # Qt: no bound
-LIST_WIDTH, CHART_WIDTH, EDITOR_WIDTH = 196, 300, 320
+LIST_WIDTH, CHART_WIDTH, EDITOR_WIDTH = 212, 300, 320
 BESIDE = ("relative_first_year_survival", "gene_diversity_kept", "inbreeding", "donor_ancestry")
 
 
@@ -120,18 +120,14 @@ class PlansPage(QWidget):
         wide = self.width() >= (LIST_WIDTH + EDITOR_WIDTH + CHART_WIDTH) * scale
         if wide:
             self.list.setFixedWidth(round(LIST_WIDTH * scale))
-            self.list.setMaximumHeight(MOST_HEIGHT)
         else:
             self.list.setFixedWidth(max(120, self.width() - 5 * theme.UNIT))
-            self.list.setFixedHeight(round(280 * (0.5 + scale / 2)))
         if wide != self._wide:
             self._wide = wide
             self._stand(wide)
 
     def _stand(self, wide: bool) -> None:
         """Side by side each column scrolls by itself; below one another only the page does."""
-        if wide:
-            self.list.setMinimumHeight(0)
         self.columns.setDirection(
             QBoxLayout.Direction.LeftToRight if wide else QBoxLayout.Direction.TopToBottom
         )

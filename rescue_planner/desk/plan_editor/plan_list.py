@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from PySide6.QtCore import QRectF, QSignalBlocker, QSize, Qt, Signal
-from PySide6.QtGui import QIcon, QKeyEvent, QPainter, QPixmap
+from PySide6.QtCore import QRect, QRectF, QSignalBlocker, QSize, Qt, Signal
+from PySide6.QtGui import QIcon, QKeyEvent, QPainter, QPixmap, QResizeEvent
 from PySide6.QtWidgets import QGridLayout, QListWidget, QListWidgetItem, QVBoxLayout, QWidget
 
 from rescue_planner.case.document import Case
@@ -21,6 +21,7 @@ from rescue_planner.case.plans import MOST_PLANS, NO_RELEASES
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.fields import sentence_of
+from rescue_planner.desk.icons import Icons
 from rescue_planner.desk.plan_mark import paint_sample
 from rescue_planner.desk.view import Scheme
 from rescue_planner.desk.widgets import button, text
@@ -29,6 +30,7 @@ from rescue_planner.projection.marks import PlanMark, mark
 STAYS = f"“{NO_RELEASES}” is always there: every other plan is compared with it."
 FULL = f"A case holds at most {MOST_PLANS} plans: remove one first."
 SAMPLE = QSize(34, 14)
+RING = 3  # the frame of the focused list and a pixel of air
 
 
 class _List(QListWidget):
@@ -36,6 +38,17 @@ class _List(QListWidget):
 
     remove_asked = Signal()
     move_asked = Signal(int)
+
+    def fit(self) -> None:
+        """Be as high as the rows are, and no higher."""
+        self.doItemsLayout()  # names break anew
+        last = self.visualItemRect(self.item(self.count() - 1)) if self.count() else QRect()
+        self.setFixedHeight(max(last.bottom() + 1, theme.TARGET) + 2 * RING)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        if event.size().width() != event.oldSize().width():
+            self.fit()
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
         moves = {Qt.Key.Key_Up: -1, Qt.Key.Key_Down: 1}
@@ -60,8 +73,10 @@ class PlanList(QWidget):
         self._drawn: tuple[object, ...] = ()
         self.list = _List(self)
         self.list.setAccessibleName("Plans")
+        self.list.setObjectName("plans")
         self.list.setIconSize(SAMPLE)
         self.list.setWordWrap(True)
+        self.list.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.list.setEditTriggers(QListWidget.EditTrigger.EditKeyPressed)
         self.reason = text("", "note")
         self.problem = text("", "problem")
@@ -69,6 +84,18 @@ class PlanList(QWidget):
         self.duplicate_button = button("Duplicate", said="Duplicate plan")
         self.rename_button = button("Rename", said="Rename plan")
         self.remove_button = button("Remove", said="Remove plan")
+        self._icons = Icons(
+            desk.view,
+            {
+                self.add_button: "add",
+                self.duplicate_button: "duplicate",
+                self.rename_button: "rename",
+                self.remove_button: "remove",
+            },
+        )
+        for made in (self.add_button, self.duplicate_button, self.rename_button,
+                     self.remove_button):  # fmt: skip
+            made.setObjectName("dense")
         self._lay_out()
         self._connect()
         self.refresh()
@@ -78,7 +105,7 @@ class PlanList(QWidget):
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(theme.HALF)
         column.addWidget(text("Plans", "section"))
-        column.addWidget(self.list, 1)
+        column.addWidget(self.list)
         grid = QGridLayout()
         grid.setSpacing(theme.HALF)
         grid.addWidget(self.add_button, 0, 0)
@@ -88,6 +115,7 @@ class PlanList(QWidget):
         column.addLayout(grid)
         column.addWidget(self.problem)
         column.addWidget(self.reason)
+        column.addStretch(1)
         self.problem.hide()
 
     def _connect(self) -> None:
@@ -164,6 +192,7 @@ class PlanList(QWidget):
             self.list.addItem(item)
         if self._current in names:
             self.list.setCurrentRow(names.index(self._current))
+        self.list.fit()
         del blocker
 
     def _enable(self, names: list[str]) -> None:
