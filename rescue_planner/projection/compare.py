@@ -94,7 +94,7 @@ def compare(
             for course in courses
             for entry in course.book.not_applied
         ),
-        capped=tuple(c.setup.plan for c in courses if c.capped[:, 0].any()),
+        capped=tuple(c.setup.plan for c in courses if any(at[0] for at in c.capped)),
     )
 
 

@@ -50,8 +50,9 @@ def distances(case: Case, read: Read) -> Distances:
     """
     recipient = read("recipient.gene_diversity", case.recipient.gene_diversity)
     n, count = recipient.size, len(case.donors)
-    between = np.zeros((n, count))
-    donors = np.zeros((n, count, count))
+    # a pair's draws lie side by side in memory: steps add whole columns
+    between = np.zeros((count, n)).T
+    donors = np.moveaxis(np.zeros((count, count, n)), -1, 0)
     for i, donor in enumerate(case.donors):
         own = read(f"donors[{i}].gene_diversity", donor.gene_diversity)
         donors[:, i, i] = own

@@ -6,6 +6,7 @@ breeding, selection among the young, mutation, drift. Sources stand in the funct
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -14,40 +15,48 @@ from numpy.typing import NDArray
 from rescue_planner.projection import trait_course
 from rescue_planner.projection.growth import Effects, Growth, yearly_growth
 from rescue_planner.projection.rules import RuleBook, act, open_book
+from rescue_planner.projection.schedule import nobody
 from rescue_planner.projection.setup import Setup
 from rescue_planner.projection.trait_course import Mixing, TraitState
 from rescue_planner.theory import diversity as div
 from rescue_planner.theory import flow, inbreeding, selection
+from rescue_planner.theory.arrays import total
 from rescue_planner.theory.trait import sustainable_shift
 
 FloatArray = NDArray[np.float64]
+Take = Callable[[int, dict[str, FloatArray]], None]
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Step:
-    """What one step used: shares of mothers, fathers and gene copies (n, D), Ne (n,)."""
+    """What one step used: shares of mothers, fathers and gene copies (n, D), Ne (n,).
+
+    `newcomers` (n,) counts those that bred. A step is `still` where nobody came in any column:
+    what flow would leave as it is need not be computed.
+    """
 
     mothers: FloatArray
     fathers: FloatArray
     shares: FloatArray
     newcomers: FloatArray
     ne: FloatArray
+    still: bool
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Course:
     """One plan's average course.
 
-    `values` maps a measure to (n, G + 1). `between` (G + 1, n, D) and `donors` (G + 1, n, D, D)
-    are the diversities at each t; `capped` marks the t at which first-year survival met 1.
+    `values` maps a measure to (n, G + 1). At each t, `between` (n, D) and `donors` (n, D, D) are
+    the diversities, and `capped` (n,) marks first-year survival that met 1.
     """
 
     setup: Setup
     values: dict[str, FloatArray]
     steps: tuple[Step, ...]
-    between: FloatArray
-    donors: FloatArray
-    capped: NDArray[np.bool_]
+    between: tuple[FloatArray, ...]
+    donors: tuple[FloatArray, ...]
+    capped: tuple[NDArray[np.bool_], ...]
     book: RuleBook
 
 
@@ -69,37 +78,33 @@ class _State:
 
 
 class _Walk:
-    """Carries one plan from t = 0 to G; the only mutable thing in this module."""
+    """Carries one plan from t = 0 to G; the only mutable thing in this module.
 
-    def __init__(self, setup: Setup) -> None:
+    Each t's measures are handed to `take`, and kept only by who takes them: many draws then work
+    in the same small memory from step to step. The rest of the course is kept on request.
+    """
+
+    def __init__(self, setup: Setup, take: Take, keep: bool) -> None:
+        self.take, self.keep = take, keep
         self.setup = setup
+        self.nobody = nobody(setup.draws, len(setup.donors))
         self.state = self._start()
         self.book = open_book(setup)
         self.effects_at_start = self._effects(0)
         self.growth: Growth | None = None
         self._grow(0)
-        self.rows: list[dict[str, FloatArray]] = []
+        self.row: dict[str, FloatArray] = {}
         self.steps: list[Step] = []
         self.between: list[FloatArray] = []
         self.donors: list[FloatArray] = []
         self.capped: list[NDArray[np.bool_]] = []
 
-    def run(self) -> Course:
+    def run(self) -> None:
         """Walk all steps."""
         for t in range(self.setup.steps + 1):
             self._record(t)
             if t < self.setup.steps:
                 self._advance(t)
-        rows = {key: np.stack([row[key] for row in self.rows], axis=-1) for key in self.rows[0]}
-        return Course(
-            self.setup,
-            rows,
-            tuple(self.steps),
-            np.stack(self.between),
-            np.stack(self.donors),
-            np.stack(self.capped),
-            self.book,
-        )
 
     def _start(self) -> _State:
         given = self.setup
@@ -172,7 +177,7 @@ class _Walk:
         row["gene_diversity_kept"] = state.h / given.distances.recipient
         row["inbreeding"] = np.asarray(inbreeding.inbreeding(state.h, given.h_reference))
         row["relative_first_year_survival"] = state.relative_survival
-        row["donor_ancestry"] = state.ancestry.sum(axis=-1)
+        row["donor_ancestry"] = total(state.ancestry)
         for i, name in enumerate(given.donors):
             row[f"donor_ancestry:{name}"] = state.ancestry[:, i]
         if self.growth is not None:
@@ -183,10 +188,12 @@ class _Walk:
         row["released"] = state.released
         row["effective_migrants"] = state.migrants
         row["cost"] = state.cost
-        self.rows.append(row)
-        self.between.append(state.between)
-        self.donors.append(state.donors)
-        self.capped.append(capped)
+        self.row = row
+        self.take(t, row)
+        if self.keep:
+            self.between.append(state.between)
+            self.donors.append(state.donors)
+            self.capped.append(capped)
 
     def _record_trait(self, t: int, row: dict[str, FloatArray]) -> None:
         given, state = self.setup.trait, self.state.trait
@@ -214,9 +221,11 @@ class _Walk:
 
     def _flow(self, t: int) -> Step:
         given, plan = self.setup, self.setup.schedule
-        going = (~self.book.stopped).astype(np.float64)[:, None]
-        females = (plan.newcomer_females[t] + plan.steady[t]) * going
-        males = (plan.newcomer_males[t] + plan.steady[t]) * going
+        coming = plan.arrivals[t] or self.nobody
+        females, males = coming.females, coming.males
+        if self.book.stopped.any():
+            going = self._going()[:, None]
+            females, males = females * going, males * going
         factor = self._size_factor()
         if factor is None:
             breeders_f, breeders_m = given.females, given.males
@@ -225,37 +234,51 @@ class _Walk:
             breeders_f = np.maximum(given.females * factor, 0.5)
             breeders_m = np.maximum(given.males * factor, 0.5)
             ne = np.maximum(given.size * factor, 1.0)
+        newcomers = total(females + males)
+        if not newcomers.any():
+            return Step(females, males, females, newcomers, ne, still=True)
         mothers = np.asarray(flow.parent_shares(females, breeders_f))
         fathers = np.asarray(flow.parent_shares(males, breeders_m))
         shares = np.asarray(flow.gene_copy_shares(mothers, fathers))
-        return Step(mothers, fathers, shares, (females + males).sum(axis=-1), ne)
+        return Step(mothers, fathers, shares, newcomers, ne, still=False)
+
+    def _going(self) -> FloatArray:
+        """1 where releases go on, 0 where a rule has stopped them, (n,)."""
+        return (~self.book.stopped).astype(np.float64)
 
     def _advance(self, t: int) -> None:
         given, state, plan = self.setup, self.state, self.setup.schedule
-        act(self.book, given, t, self.rows[-1])
+        act(self.book, given, t, self.row)
         step = self._flow(t)
-        self.steps.append(step)
+        if self.keep:
+            self.steps.append(step)
         relative = self._young(step)
-        h_pool = np.asarray(div.pooled(state.h, state.between, state.donors, step.shares))
+        h_pool = state.h
+        if not step.still:
+            h_pool = np.asarray(div.pooled(state.h, state.between, state.donors, step.shares))
         self._advance_trait(t, step, h_pool)
         self._advance_loci(step)
         state.h = np.asarray(div.drifted(h_pool, step.ne))
-        state.between = np.asarray(div.between_after(state.between, state.donors, step.shares))
+        if not step.still:
+            state.between = np.asarray(div.between_after(state.between, state.donors, step.shares))
+            state.ancestry = np.asarray(flow.ancestry_after(state.ancestry, step.shares))
         state.donors = self._drifted_donors()
-        state.ancestry = np.asarray(flow.ancestry_after(state.ancestry, step.shares))
         state.relative_survival = relative
-        going = (~self.book.stopped).astype(np.float64)
-        state.released = state.released + plan.animals[t] * going
+        going, coming = self._going(), plan.arrivals[t] or self.nobody
+        state.released = state.released + coming.animals * going
         state.migrants = state.migrants + step.newcomers
-        state.cost = state.cost + plan.cost[t] * going + plan.action_cost[t]
+        state.cost = state.cost + coming.cost * going + plan.action_cost[t]
         self._grow(t + 1)
         if self.growth is not None:
-            self._advance_adults(t, plan.survivors[t] * going, self.growth.rate[0])
+            self._advance_adults(t, coming.survivors * going, self.growth.rate[0])
 
     def _young(self, step: Step) -> FloatArray:
-        state = self.state
+        given, state = self.setup, self.state
+        if step.still:
+            f = inbreeding.inbreeding(state.h, given.h_reference)
+            return np.asarray(inbreeding.survival_factor(f, given.lethal_first_year))
         n, d = state.between.shape
-        whole = np.empty((n, d + 1, d + 1))
+        whole = np.moveaxis(np.empty((d + 1, d + 1, n)), -1, 0)
         whole[:, 0, 0] = state.h
         whole[:, 0, 1:] = whole[:, 1:, 0] = state.between
         whole[:, 1:, 1:] = state.donors
@@ -264,8 +287,8 @@ class _Walk:
                 _with_residents(step.mothers),
                 _with_residents(step.fathers),
                 whole,
-                self.setup.h_reference,
-                self.setup.lethal_first_year,
+                given.h_reference,
+                given.lethal_first_year,
             )
         )
 
@@ -282,11 +305,15 @@ class _Walk:
 
     def _advance_loci(self, step: Step) -> None:
         for i, locus in enumerate(self.setup.loci):
-            mixed = flow.mixed(self.state.loci[i], locus.donor_frequency, step.shares)
+            mixed = self.state.loci[i]
+            if not step.still:
+                mixed = np.asarray(flow.mixed(mixed, locus.donor_frequency, step.shares))
             selected = selection.after_selection(mixed, locus.fitness)
-            self.state.loci[i] = np.asarray(
-                selection.after_mutation(selected, locus.mutation_to, locus.mutation_from)
-            )
+            if locus.mutates:
+                selected = selection.after_mutation(
+                    selected, locus.mutation_to, locus.mutation_from
+                )
+            self.state.loci[i] = np.asarray(selected)
 
     def _drifted_donors(self) -> FloatArray:
         drifts = self.setup.donor_drifts
@@ -309,7 +336,11 @@ class _Walk:
 
 def _with_residents(shares: FloatArray) -> FloatArray:
     """Put the residents' share before the donors': (n, D) -> (n, D + 1)."""
-    return np.concatenate([1.0 - shares.sum(axis=-1, keepdims=True), shares], axis=-1)
+    n, d = shares.shape
+    whole = np.empty((d + 1, n)).T
+    whole[:, 0] = 1.0 - total(shares)
+    whole[:, 1:] = shares
+    return whole
 
 
 def expected_course(setup: Setup) -> Course:
@@ -317,4 +348,20 @@ def expected_course(setup: Setup) -> Course:
 
     `setup.schedule` takes up the releases that rules add, so a setup serves one course.
     """
-    return _Walk(setup).run()
+    rows: list[dict[str, FloatArray]] = []
+    walk = _Walk(setup, lambda _t, row: rows.append(row), keep=True)
+    walk.run()
+    return Course(
+        setup,
+        {key: np.stack([row[key] for row in rows]).T for key in rows[0]},
+        tuple(walk.steps),
+        tuple(walk.between),
+        tuple(walk.donors),
+        tuple(walk.capped),
+        walk.book,
+    )
+
+
+def expected_values(setup: Setup, take: Take) -> None:
+    """Hand the measures of each t to `take`, (n,) each, and keep nothing."""
+    _Walk(setup, take, keep=False).run()

@@ -13,7 +13,7 @@ import numpy as np
 
 from rescue_planner.projection.expected import Course, Step, expected_course
 from rescue_planner.projection.rules import RuleBook
-from rescue_planner.projection.schedule import ReleaseNumbers
+from rescue_planner.projection.schedule import ReleaseNumbers, Schedule, nobody
 from rescue_planner.projection.setup import RuleSetup, Setup
 
 T = TypeVar("T")
@@ -47,8 +47,26 @@ def _joined(setups: Sequence[Setup]) -> Setup:
         **merged,
         plans=tuple(one.plan for one in setups),
         loci=tuple(_beside(list(same), 0) for same in zip(*(s.loci for s in setups), strict=True)),
-        schedule=_beside([one.schedule for one in setups], 1),
+        schedule=_schedule([one.schedule for one in setups]),
         rules=tuple(_spread(r, i, len(setups)) for i, s in enumerate(setups) for r in s.rules),
+    )
+
+
+def _schedule(schedules: list[Schedule]) -> Schedule:
+    """Put schedules of one column each beside one another."""
+    first, count = schedules[0], len(schedules)
+    none = nobody(1, first.donors)
+    steps = zip(*(one.arrivals for one in schedules), strict=True)
+    return Schedule(
+        draws=count,
+        donors=first.donors,
+        arrivals=[
+            _beside([one or none for one in step], 0) if any(step) else None for step in steps
+        ],
+        **{
+            name: np.concatenate([getattr(one, name) for one in schedules], axis=1)
+            for name in ("action_cost", "size_times", "capacity_times", "first_year_times")
+        },
     )
 
 
@@ -96,11 +114,19 @@ def _column(whole: Course, setup: Setup, i: int) -> Course:
         setup=setup,
         values={measure: values[own] for measure, values in whole.values.items()},
         steps=tuple(
-            Step(*(getattr(step, part.name)[own] for part in fields(Step))) for step in whole.steps
+            Step(
+                step.mothers[own],
+                step.fathers[own],
+                step.shares[own],
+                step.newcomers[own],
+                step.ne[own],
+                still=not step.newcomers[i],
+            )
+            for step in whole.steps
         ),
-        between=whole.between[:, own],
-        donors=whole.donors[:, own],
-        capped=whole.capped[:, own],
+        between=tuple(at[own] for at in whole.between),
+        donors=tuple(at[own] for at in whole.donors),
+        capped=tuple(at[own] for at in whole.capped),
         book=RuleBook(
             book.stopped[own],
             [],

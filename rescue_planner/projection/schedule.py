@@ -32,20 +32,39 @@ class ReleaseNumbers:
     cost: FloatArray
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class Arrivals:
+    """Who comes in one step: newcomers that breed (n, D) by sex, animals, survivors, money (n,)."""
+
+    females: FloatArray
+    males: FloatArray
+    animals: FloatArray
+    survivors: FloatArray
+    cost: FloatArray
+
+
+def nobody(n: int, donors: int) -> Arrivals:
+    """Return the arrivals of a step in which nobody comes.
+
+    A donor's draws lie side by side in memory: steps add whole columns.
+    """
+    nothing = np.zeros(n)
+    by_donor = np.zeros((donors, n)).T
+    return Arrivals(by_donor, by_donor, nothing, nothing, nothing)
+
+
 @dataclass(slots=True, eq=False)
 class Schedule:
     """A plan's flow and actions step by step.
 
-    Newcomers are (G, n, D); animals, survivors and costs (G, n); factors of other actions on
-    size (G, n), and on carrying capacity and first-year survival at each t (G + 1, n).
+    `arrivals` has one entry a step, nothing where nobody comes. Factors of other actions on size
+    and their cost are (G, n), those on carrying capacity and first-year survival at each t
+    (G + 1, n); without other actions they have one column.
     """
 
-    newcomer_females: FloatArray
-    newcomer_males: FloatArray
-    steady: FloatArray
-    animals: FloatArray
-    survivors: FloatArray
-    cost: FloatArray
+    draws: int
+    donors: int
+    arrivals: list[Arrivals | None]
     action_cost: FloatArray
     size_times: FloatArray
     capacity_times: FloatArray
@@ -53,13 +72,23 @@ class Schedule:
 
     def add(self, t: int, release: ReleaseNumbers, where: FloatArray) -> None:
         """Put a release into step `t`, weighted by `where` (n,); past the horizon, nothing."""
-        if not 0 <= t < self.animals.shape[0]:
+        if not 0 <= t < len(self.arrivals):
             return
-        self.newcomer_females[t, :, release.donor] += where * release.newcomer_females
-        self.newcomer_males[t, :, release.donor] += where * release.newcomer_males
-        self.animals[t] += where * release.animals
-        self.survivors[t] += where * release.survivors
-        self.cost[t] += where * release.cost
+        old = self.arrivals[t] or nobody(self.draws, self.donors)
+        self.arrivals[t] = Arrivals(
+            _with_column(old.females, release.donor, where * release.newcomer_females),
+            _with_column(old.males, release.donor, where * release.newcomer_males),
+            old.animals + where * release.animals,
+            old.survivors + where * release.survivors,
+            old.cost + where * release.cost,
+        )
+
+
+def _with_column(values: FloatArray, donor: int, more: FloatArray) -> FloatArray:
+    """Return (n, D) values with `more` (n,) added to one donor's."""
+    added = values.copy(order="K")
+    added[:, donor] += more
+    return added
 
 
 def schedule(case: Case, plan: Plan, index: int, count: int, read: Read) -> Schedule:
@@ -67,7 +96,16 @@ def schedule(case: Case, plan: Plan, index: int, count: int, read: Read) -> Sche
     start, generation = float(case.time.start_year.best), float(case.time.generation_years.best)
     one = read("", 1.0)
     n, donors = one.size, [donor.name for donor in case.donors]
-    result = _empty(count, n, len(donors))
+    columns = n if plan.other_actions else 1
+    result = Schedule(
+        draws=n,
+        donors=len(donors),
+        arrivals=[None] * count,
+        action_cost=np.zeros((count, columns)),
+        size_times=np.ones((count, columns)),
+        capacity_times=np.ones((count + 1, columns)),
+        first_year_times=np.ones((count + 1, columns)),
+    )
     at = f"plans[{index}]"
     for i, release in enumerate(plan.releases):
         numbers = release_numbers(release, donors, f"{at}.releases[{i}]", read)
@@ -75,26 +113,14 @@ def schedule(case: Case, plan: Plan, index: int, count: int, read: Read) -> Sche
             result.add(step_of(year, start, generation), numbers, one)
     for i, steady in enumerate(plan.steady):
         rate = read(f"{at}.steady[{i}].migrants_per_generation", steady.migrants_per_generation)
-        covered = _covered(steady, start, generation, count)
-        result.steady[:, :, donors.index(steady.donor)] += covered[:, None] * rate / 2
+        zero = np.zeros(n)
+        half = ReleaseNumbers(donors.index(steady.donor), 0.5 * rate, 0.5 * rate, zero, zero, zero)
+        for t, part in enumerate(_covered(steady, start, generation, count)):
+            if part > 0.0:
+                result.add(t, half, np.full(n, part))
     for i, action in enumerate(plan.other_actions):
         _act(result, action, f"{at}.other_actions[{i}]", (start, generation), read)
     return result
-
-
-def _empty(count: int, n: int, donors: int) -> Schedule:
-    return Schedule(
-        newcomer_females=np.zeros((count, n, donors)),
-        newcomer_males=np.zeros((count, n, donors)),
-        steady=np.zeros((count, n, donors)),
-        animals=np.zeros((count, n)),
-        survivors=np.zeros((count, n)),
-        cost=np.zeros((count, n)),
-        action_cost=np.zeros((count, n)),
-        size_times=np.ones((count, n)),
-        capacity_times=np.ones((count + 1, n)),
-        first_year_times=np.ones((count + 1, n)),
-    )
 
 
 def release_numbers(release: RuleRelease, donors: list[str], at: str, read: Read) -> ReleaseNumbers:
@@ -133,7 +159,7 @@ def _act(
 ) -> None:
     """Enter one other action: in force from its year until the end of `until_year`."""
     start, generation = clock
-    count = result.animals.shape[0]
+    count = len(result.arrivals)
     slack = TOLERANCE_STEPS * generation
     first = float(action.year.best)
     end = np.inf if action.until_year is None else float(action.until_year.best) + 1.0

@@ -89,6 +89,7 @@ class LocusSetup:
     donor_frequency: FloatArray
     mutation_to: FloatArray
     mutation_from: FloatArray
+    mutates: bool
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -229,10 +230,10 @@ def _rules(case: Case, plan: Plan, index: int, read: Reader) -> tuple[RuleSetup,
 
 
 def _per_donor(read: Reader, given: list[tuple[str, Quantity | float]]) -> FloatArray:
-    """Return (n, D) values."""
+    """Return (n, D) values, each donor's draws side by side in memory."""
     if not given:
         return np.zeros((read.n, 0))
-    return np.stack([read(path, value) for path, value in given], axis=-1)
+    return np.stack([read(path, value) for path, value in given]).T
 
 
 def _life(life: LifeCycle, read: Reader) -> LifeSetup:
@@ -289,11 +290,11 @@ def _trait(case: Case, trait: Trait, apart: Distances, read: Reader) -> TraitSet
 
 def _locus(case: Case, index: int, locus: Locus, read: Reader) -> LocusSetup:
     at = f"loci[{index}]"
+    to = read(f"{at}.mutation_to", locus.mutation_to)
+    off = read(f"{at}.mutation_from", locus.mutation_from)
     return LocusSetup(
         name=locus.name,
-        fitness=np.stack(
-            [read(f"{at}.fitness[{k}]", w) for k, w in enumerate(locus.fitness)], axis=-1
-        ),
+        fitness=np.stack([read(f"{at}.fitness[{k}]", w) for k, w in enumerate(locus.fitness)]).T,
         frequency=read(f"{at}.frequency", locus.frequency),
         donor_frequency=_per_donor(
             read,
@@ -302,6 +303,7 @@ def _locus(case: Case, index: int, locus: Locus, read: Reader) -> LocusSetup:
                 for d in case.donors
             ],
         ),
-        mutation_to=read(f"{at}.mutation_to", locus.mutation_to),
-        mutation_from=read(f"{at}.mutation_from", locus.mutation_from),
+        mutation_to=to,
+        mutation_from=off,
+        mutates=bool(to.any() or off.any()),
     )

@@ -17,7 +17,20 @@ def floats(value: Numbers) -> FloatArray:
     return np.asarray(value, dtype=np.float64)
 
 
+_FEW = 8  # up to here numpy itself adds one after the other, so the sum is the same to the bit
+
+
 def total(values: FloatArray) -> FloatArray:
-    """Return the sum over the last axis; (..., K) -> (...); 0 where K = 0."""
-    summed: FloatArray = np.sum(values, axis=-1)
-    return summed
+    """Return the sum over the last axis; (..., K) -> (...); 0 where K = 0.
+
+    The last axis is that of donors or sources, so it is short beside the axis of draws: adding
+    whole columns is several times faster than numpy's sum along a short axis.
+    """
+    count = values.shape[-1]
+    if not 0 < count <= _FEW:
+        summed: FloatArray = np.sum(values, axis=-1)
+        return summed
+    column: FloatArray = values[..., 0]
+    for i in range(1, count):
+        column = column + values[..., i]
+    return column

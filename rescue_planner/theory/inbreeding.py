@@ -8,7 +8,7 @@ memory; Ralls, Ballou & Templeton 1988 (Conserv. Biol. 2:185).
 
 import numpy as np
 
-from rescue_planner.theory.arrays import FloatArray, Numbers, floats, total
+from rescue_planner.theory.arrays import FloatArray, Numbers, floats
 from rescue_planner.theory.size import retained
 
 
@@ -73,7 +73,7 @@ def young_survival(
     mother_shares, father_shares : (..., S) array
         Share of mothers (fathers) from each source, residents first; each sums to 1.
     diversity : (..., S, S) array
-        H_ij between sources before the step; a source's own H on the diagonal.
+        H_ij between sources before the step, symmetric; a source's own H on the diagonal.
     h_reference : (...) array
         Gene diversity at which F = 0.
     lethal_equivalents_diploid : (...) array
@@ -84,11 +84,17 @@ def young_survival(
     (...) array
         Relative survival, 0 to 1.
     """
-    reference = floats(h_reference)[..., np.newaxis, np.newaxis]
-    lethals = floats(lethal_equivalents_diploid)[..., np.newaxis, np.newaxis]
-    factor = survival_factor(inbreeding(diversity, reference), lethals)
-    of_mothers = total(factor * floats(father_shares)[..., np.newaxis, :])
-    return total(of_mothers * floats(mother_shares))
+    u, v, h = floats(mother_shares), floats(father_shares), floats(diversity)
+    survival: FloatArray | float = 0.0
+    # diversity is symmetric: a pair of sources counts once, with both ways to mate
+    for i in range(u.shape[-1]):
+        for j in range(i + 1):
+            both = u[..., i] * v[..., j]
+            if i != j:
+                both = both + u[..., j] * v[..., i]
+            f = inbreeding(h[..., i, j], h_reference)
+            survival = survival + both * survival_factor(f, lethal_equivalents_diploid)
+    return np.asarray(survival)[()]
 
 
 def stage_split(f: Numbers, lethal_equivalents_diploid: Numbers, steps: Numbers) -> FloatArray:

@@ -72,6 +72,8 @@ def after_selection(p: Numbers, fitness: Numbers) -> FloatArray:
     p_, q, w11, w12, w22 = _genotypes(p, fitness)
     of_a = p_ * (p_ * w11 + q * w12)
     mean = of_a + q * (p_ * w12 + q * w22)
+    if np.all(mean):
+        return of_a / mean
     dead = mean == 0.0
     if np.any(dead & (p_ > 0.0) & (p_ < 1.0)):
         raise ValueError("mean fitness is 0: no genotype that is present can live")

@@ -52,6 +52,15 @@ RAW = {
 CASE = Case.model_validate(RAW)
 
 
+KEYS = (  # what the loop gives too
+    "gene_diversity",
+    "donor_ancestry",
+    "allele_frequency:coat",
+    "inbreeding",
+    "relative_first_year_survival",
+)
+
+
 def drawn() -> dict[str, np.ndarray]:
     rng = np.random.default_rng(3)
     return {
@@ -97,17 +106,11 @@ def one(i: int) -> list[tuple[float, ...]]:
 
 
 def together() -> dict[str, np.ndarray]:
-    return drawn_values(CASE, CASE.plans[1], VALUES)
+    return drawn_values(CASE, CASE.plans[1], VALUES, KEYS)
 
 
 def rows() -> Iterator[Row]:
-    keys = (
-        "gene_diversity",
-        "donor_ancestry",
-        "allele_frequency:coat",
-        "inbreeding",
-        "relative_first_year_survival",
-    )
+    keys = KEYS
     whole = together()
     alike = max(
         float(np.abs(np.array(one(i)) - np.stack([whole[k][i] for k in keys], -1)).max())
