@@ -110,9 +110,9 @@ def use_plain() -> None:
 def use_compiled() -> bool:
     """Load or compile the kernels, then take the compiled path; False where that fails."""
     try:
-        from rescue_planner.kernels.warm import warm
+        from rescue_planner.kernels.warm import warm_chain
 
-        warm()
+        warm_chain()
     except Exception:  # noqa: BLE001 - a machine that cannot compile still gets its numbers
         return False
     _path[0] = compiled
