@@ -31,7 +31,7 @@ def table_xml(table: Table, shares: Sequence[float], width_mm: float) -> Any:  #
     from docx.oxml import parse_xml
 
     widths = [round(share * width_mm * _TWIPS_PER_MM) for share in shares]
-    size = 15 if len(table.head) > 6 else 17  # in half points
+    size = 15 if len(table.head) > 5 else 17  # in half points
     grid = "".join(f'<w:gridCol w:w="{width}"/>' for width in widths)
     rows = "".join(_rows(table, widths, size))
     return parse_xml(

@@ -20,6 +20,7 @@ from rescue_planner.projection.table import shortest
 
 NOT_STATED = "not stated"
 DEFAULT = "default"
+LEFT_OUT = "left out"
 CHOICE = "choice"
 TEXT = "text"
 # Shown elsewhere in the annex, not as inputs.
@@ -91,7 +92,7 @@ def _field(held: object, what: Input | None, at: Path, around: _Around) -> Itera
 
 def _number(held: Quantity, what: Input | None, at: Path, around: _Around) -> InputRow:
     value = shortest(float(held.best)) if _last(at) == "seed" else given(held.best)
-    value = value if around.set_here else f"left out; taken as {value}"
+    value = value if around.set_here else f"{LEFT_OUT}; taken as {value}"
     return InputRow(
         path=format_path(at),
         name=_name(what, at),
@@ -117,14 +118,14 @@ def _nothing(what: Input | None, at: Path, around: _Around) -> Iterator[InputRow
     words = taken(around.case, at)
     if words is None:
         return
-    value = f"left out; {words}" if words else "left out"
+    value = f"{LEFT_OUT}; {words}" if words else LEFT_OUT
     yield _row(at, _name(what, at), value, _unit(what, around), DEFAULT)
 
 
 def _plain(held: object, what: Input | None, at: Path, around: _Around) -> InputRow:
     prose = _last(at) in _PROSE
     text = clean(str(held)) if prose else _choice(held, _last(at))
-    text = text if around.set_here else f"left out; taken as {text}"
+    text = text if around.set_here else f"{LEFT_OUT}; taken as {text}"
     origin = (TEXT if prose else CHOICE) if around.set_here else DEFAULT
     return _row(at, _name(what, at), text, "", origin)
 

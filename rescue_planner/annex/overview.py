@@ -71,18 +71,23 @@ class _Grid:
         return left, low
 
 
-def _grid(width: int, panels: int, key_rows: int) -> _Grid:
+def _grid(width: int, panels: int, key_rows: int, left: float) -> _Grid:
     narrow = width < 120
     columns = min(2 if narrow else 3, panels)
     rows = -(-panels // columns)
     row, head = (33.0, 9.5) if narrow else (36.0, 9.5)
     foot = 10.0 + _KEY_MM * key_rows
     line, marker = (0.9, 2.4) if narrow else (1.0, 2.8)
-    panel = Sheet(width / columns, row, 7.0, line, marker, 10.0, 4.5, 3.0, 8.2, 3)
+    panel = Sheet(
+        width / columns, row, _TEXT_PT, line, marker, max(left, 10.0), 4.5, 3.0, 8.2, _YEAR_TICKS
+    )
     return _Grid(columns, head + rows * row + foot, head, foot, panel)
 
 
 _KEY_MM = 4.0
+_TEXT_PT = 7.0
+_YEAR_TICKS = 3
+_TEXT_PT = 7.0
 
 
 def draw_overview(
@@ -90,12 +95,13 @@ def draw_overview(
 ) -> Figure:
     """Draw a panel for each of `measures`; call within `sheet.printed()`."""
     key_columns = 1 if width < 120 else 2
-    grid = _grid(width, len(measures), -(-len(comparison.plans) // key_columns))
+    found = [scales(case, comparison, measure, _YEAR_TICKS, 4) for measure in measures]
+    widest = max(text_width(words, _TEXT_PT) for scale in found for words in scale.values.texts)
+    grid = _grid(width, len(measures), -(-len(comparison.plans) // key_columns), widest + 2.0)
     whole = replace(grid.panel, width=width, height=grid.height)
     figure = blank(whole)
     for index, (mark, measure) in enumerate(panel_marks(measures)):
-        scale = scales(case, comparison, measure, grid.panel.year_ticks, 4)
-        frame = Frame(figure, grid.corner(index), grid.panel, scale)
+        frame = Frame(figure, grid.corner(index), grid.panel, found[index])
         frame.values_axis()
         frame.years_axis(named=index + grid.columns >= len(measures))
         if index < grid.columns:
@@ -105,7 +111,7 @@ def draw_overview(
         draw_goals(frame, goals(case, measure))
         _letters(frame, lines)
         _words(frame, f"{mark}  {axis_title(comparison, measure)}")
-    key = Frame(figure, (0.0, 0.0), replace(whole, left=0, right=0, bottom=0, top=0), scale)
+    key = Frame(figure, (0.0, 0.0), replace(whole, left=0, right=0, bottom=0, top=0), found[0])
     _key(key, comparison, curves(comparison, measures[0]), grid.foot - 10.0, key_columns)
     return figure
 

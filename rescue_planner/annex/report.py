@@ -9,13 +9,13 @@ from rescue_planner.advice.targets import not_checked, target_checks
 from rescue_planner.annex import cautions
 from rescue_planner.annex.blocks import Block, Bullets, Illustration, Report, Section, Table, Text
 from rescue_planner.annex.captions import SHORT_HASH
+from rescue_planner.annex.input_tables import input_blocks
 from rescue_planner.annex.methods import assumptions, methods, not_included
 from rescue_planner.annex.record import Occasion, remark_rows, versions, what_if_of
 from rescue_planner.annex.schedule import action_sentences, rule_sentences, schedule_table
 from rescue_planner.annex.tables import (
     course_tables,
     horizon_table,
-    input_tables,
     target_table,
     target_words,
 )
@@ -129,7 +129,10 @@ def _plans(content: Content) -> tuple[Section, ...]:
         plan = case.plan(name)
         label = plan_label(content.comparison, name)
         table = schedule_table(case, plan, label)
-        blocks: list[Block] = [Text("No animals are released.")] if table is None else [table]
+        none = "No animals are released."
+        if any(rule.then == "release" for rule in plan.rules):
+            none = "No release has a year of its own: animals come when a rule says so."
+        blocks: list[Block] = [Text(none)] if table is None else [table]
         rules, actions = rule_sentences(case, plan), action_sentences(case, plan)
         if rules:
             blocks += [Text("Rules:"), Bullets(rules)]
@@ -164,9 +167,11 @@ def _compared(content: Content) -> tuple[Section, ...]:
         else []
     )
     words = tuple(Text(one) for one in [*gone, *capped])
-    note = Text("Brackets hold the 5 % to 95 % range where a depth gives one.", "note")
+    ranges = any(series.statistic == "q05" for series in comparison.series)
+    note = "Brackets hold the 5 % to 95 % range where a depth gives one."
+    notes = (Text(note, "note"),) if ranges else ()
     return (
-        Section("Plans compared", (*words, horizon_table(comparison, measures), note)),
+        Section("Plans compared", (*words, horizon_table(comparison, measures), *notes)),
         Section("Figures", content.figures, 2),
         Section("Comparison over time", course_tables(comparison, measures), 2),
     )
@@ -199,11 +204,12 @@ def _targets(content: Content) -> Section:
 
 def _inputs(content: Content) -> tuple[Section, ...]:
     words = (
-        "Every value as entered. Origin reads “not stated” where the case gives none, “default” "
-        "where a field was left out and the value taken is the program’s, “choice” and “text” "
-        "where the input is not a number. Shares are written as in the case file: 0.3 is 30 %."
+        "Every value as entered, with its range in brackets. Origin reads “not stated” where the "
+        "case gives none, “choice” and “text” where the input is not a number. What the case "
+        "leaves out stands under each table with what the program takes instead. Shares are "
+        "written as in the case file: 0.3 is 30 %."
     )
-    return (Section("Inputs and their origins", (Text(words), *input_tables(content.case))),)
+    return (Section("Inputs and their origins", (Text(words), *input_blocks(content.case))),)
 
 
 def _assumptions(content: Content) -> Section:

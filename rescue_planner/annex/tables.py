@@ -1,4 +1,4 @@
-"""The tables of the annex: plans compared, targets, inputs."""
+"""The tables of the annex: plans compared, and target checks."""
 
 from __future__ import annotations
 
@@ -7,43 +7,51 @@ from collections.abc import Sequence
 from rescue_planner.advice.targets import TargetCheck
 from rescue_planner.annex.blocks import Table
 from rescue_planner.annex.curves import ends_with_the_last_animal
-from rescue_planner.annex.inputs import InputRow, input_rows
 from rescue_planner.annex.numerals import decimal, given, value_text, year_text
 from rescue_planner.annex.schedule import bound_text
-from rescue_planner.annex.wording import axis_title, one_line, plan_label
+from rescue_planner.annex.wording import axis_title, listed, one_line, plan_label
 from rescue_planner.case.document import Case, Target
 from rescue_planner.case.measures import title
-from rescue_planner.case.paths import parse_path
 from rescue_planner.projection.results import DEPTH_NAMES, Comparison
 
 # Generations from the start at which the plans are compared, besides the horizon.
 GENERATIONS = (0, 1, 2, 3, 5, 10)
 GONE = "gone"
+NO_DEPTH = "–"
 
 
 def horizon_table(comparison: Comparison, measures: Sequence[str]) -> Table:
     """Return every measure at the horizon, a column for each plan."""
     last = comparison.years.size - 1
+    depths = {key: _depth_of(comparison, key) for key in measures}
+    names = listed(sorted(set(depths.values()) - {NO_DEPTH}))
+    several = len(set(depths.values())) > 1
+    when = f"{year_text(float(comparison.years[last]))} (generation {last})"
     return Table(
-        caption=f"Plans at the horizon, {year_text(float(comparison.years[last]))} "
-        f"(generation {last})",
-        head=("Measure (unit)", "Depth", "Today", *_plan_heads(comparison)),
-        rows=tuple(_horizon_row(comparison, key, last) for key in measures),
-        numbers=frozenset(range(2, 3 + len(comparison.plans))),
+        caption=f"Plans at the horizon, {when}; depth: {names}",
+        head=("Measure (unit)", *(("Depth",) if several else ()), "Today", *_heads(comparison)),
+        rows=tuple(
+            (axis_title(comparison, key), *((depths[key],) if several else ()), *cells)
+            for key, cells in ((key, _horizon_cells(comparison, key, last)) for key in measures)
+        ),
+        numbers=frozenset(range(1 + several, 2 + several + len(comparison.plans))),
     )
 
 
-def _plan_heads(comparison: Comparison) -> tuple[str, ...]:
+def _depth_of(comparison: Comparison, key: str) -> str:
+    found = (comparison.best(plan, key) for plan in comparison.plans)
+    return next((DEPTH_NAMES[one.depth] for one in found if one is not None), NO_DEPTH)
+
+
+def _heads(comparison: Comparison) -> tuple[str, ...]:
     return tuple(plan_label(comparison, plan) for plan in comparison.plans)
 
 
-def _horizon_row(comparison: Comparison, key: str, last: int) -> tuple[str, ...]:
+def _horizon_cells(comparison: Comparison, key: str, last: int) -> tuple[str, ...]:
     series = [comparison.best(plan, key) for plan in comparison.plans]
     first = next((one for one in series if one is not None), None)
     start = "–" if first is None else value_text(key, float(first.values[0]))
-    depth = "–" if first is None else DEPTH_NAMES[first.depth]
-    cells = (_cell(comparison, plan, key, last) for plan in comparison.plans)
-    return axis_title(comparison, key), depth, start, *cells
+    return start, *(_cell(comparison, plan, key, last) for plan in comparison.plans)
 
 
 def _cell(comparison: Comparison, plan: str, key: str, t: int) -> str:
@@ -51,8 +59,7 @@ def _cell(comparison: Comparison, plan: str, key: str, t: int) -> str:
     series = comparison.best(plan, key)
     if series is None:
         return "not computed"
-    end = comparison.gone_after(plan)
-    if end is not None and t >= end and ends_with_the_last_animal(key):
+    if _is_gone(comparison, plan, key, t):
         return GONE
     value = value_text(key, float(series.values[t]))
     low, high = (comparison.get(plan, series.depth, key, q) for q in ("q05", "q95"))
@@ -60,6 +67,12 @@ def _cell(comparison: Comparison, plan: str, key: str, t: int) -> str:
         return value
     between = " to ".join(value_text(key, float(q.values[t])) for q in (low, high))
     return f"{value} ({between})"
+
+
+def _is_gone(comparison: Comparison, plan: str, key: str, t: int) -> bool:
+    """Return whether a measure has no meaning any more because no animal is left."""
+    end = comparison.gone_after(plan)
+    return end is not None and t >= end and ends_with_the_last_animal(key)
 
 
 def chosen_steps(comparison: Comparison) -> tuple[int, ...]:
@@ -80,7 +93,7 @@ def _course_table(comparison: Comparison, key: str) -> Table:
         rows.append((year_text(float(comparison.years[t])), str(t), *cells))
     return Table(
         caption=f"{axis_title(comparison, key)}",
-        head=("Year", "Generation", *_plan_heads(comparison)),
+        head=("Year", "Generation", *_heads(comparison)),
         rows=tuple(rows),
         numbers=frozenset(range(1, 2 + len(comparison.plans))),
     )
@@ -100,13 +113,20 @@ def target_table(case: Case, comparison: Comparison, checks: Sequence[TargetChec
                 plan_label(comparison, check.plan),
                 DEPTH_NAMES[check.depth],
                 year_text(check.year),
-                value_text(check.measure, check.value),
-                _met(check),
+                *_value_and_met(comparison, check),
             )
             for check in checks
         ),
         numbers=frozenset({4, 5}),
     )
+
+
+def _value_and_met(comparison: Comparison, check: TargetCheck) -> tuple[str, str]:
+    """Return the value read and whether it meets the target; no verdict on a lost population."""
+    t = comparison.index_at(check.year)
+    if check.runs is None and _is_gone(comparison, check.plan, check.measure, t):
+        return GONE, "no animals left"
+    return value_text(check.measure, check.value), _met(check)
 
 
 def _met(check: TargetCheck) -> str:
@@ -131,73 +151,3 @@ def target_words(case: Case, number: int, target: Target) -> str:
     except KeyError:
         name = one_line(target.measure)
     return f"{number}: {name} {' and '.join(bounds)} by {given(target.by_year.best)}"
-
-
-_INPUT_HEAD = (
-    "Input",
-    "Value",
-    "Range and shape",
-    "Unit",
-    "Origin",
-    "Source",
-    "Date",
-    "Person",
-    "Path in the case file",
-)
-_GROUPS = {
-    "time": "Time",
-    "recipient": "Recipient",
-    "life_cycle": "Life cycle",
-    "inbreeding_cost": "Inbreeding cost",
-    "load": "Hidden load",
-    "mixing_cost": "Mixing cost",
-    "genome": "Genome",
-    "trait": "Trait",
-    "run": "Run",
-}
-_LISTS = {
-    "donors": "Donor",
-    "loci": "Tracked locus",
-    "plans": "Plan",
-    "what_ifs": "What-if",
-    "targets": "Target",
-}
-
-
-def input_tables(case: Case) -> tuple[Table, ...]:
-    """Return every input of the case, one table for each part of it."""
-    groups: dict[str, list[InputRow]] = {}
-    for row in input_rows(case):
-        groups.setdefault(_group(case, row.path), []).append(row)
-    return tuple(
-        Table(
-            caption=f"Inputs: {name}",
-            head=_INPUT_HEAD,
-            rows=tuple(_input_row(row) for row in rows),
-        )
-        for name, rows in groups.items()
-    )
-
-
-def _group(case: Case, path: str) -> str:
-    steps = parse_path(path)
-    first = str(steps[0])
-    if first in _LISTS and len(steps) > 1 and isinstance(steps[1], int):
-        held = getattr(case, first)[steps[1]]
-        name = getattr(held, "name", str(steps[1] + 1))
-        return f"{_LISTS[first]} {one_line(name)}" if first != "targets" else "Targets"
-    return _GROUPS.get(first, "Case")
-
-
-def _input_row(row: InputRow) -> tuple[str, ...]:
-    return (
-        row.name,
-        row.value,
-        row.spread or "–",
-        row.unit or "–",
-        row.origin,
-        row.source or "–",
-        row.date or "–",
-        row.by or "–",
-        row.path,
-    )

@@ -3,9 +3,10 @@ from __future__ import annotations
 import pytest
 from pydantic import BaseModel
 
+from rescue_planner.annex.blocks import Table, Text
+from rescue_planner.annex.input_tables import HEAD, input_blocks
 from rescue_planner.annex.inputs import CHOICE, DEFAULT, NOT_STATED, TEXT, input_rows
 from rescue_planner.annex.numerals import given
-from rescue_planner.annex.tables import input_tables
 from rescue_planner.case.document import Case
 from rescue_planner.case.quantity import FrozenMap, Quantity
 
@@ -41,9 +42,42 @@ def test_that_every_number_of_the_case_has_a_row_with_its_value(case, rows):
 
 
 def test_that_no_row_lacks_an_origin(case):
-    for table in input_tables(case):
-        place = table.head.index("Origin")
-        assert all(row[place] for row in table.rows)
+    tables = [block for block in input_blocks(case) if isinstance(block, Table)]
+    assert tables
+    for table in tables:
+        assert table.head == HEAD
+        assert all(row[HEAD.index("Origin")] for row in table.rows)
+
+
+def test_that_every_input_stands_in_the_chapter_once(case):
+    """A row of a table, or a name in the line below it; the first page has the decision."""
+    blocks = input_blocks(case)
+    cells = [row for block in blocks if isinstance(block, Table) for row in block.rows]
+    left = " ".join(block.words for block in blocks if isinstance(block, Text))
+    first_page = ("title", "species", "authority", "decision")
+    given = [row for row in input_rows(case) if row.origin != DEFAULT]
+    told = [row for row in given if not row.path.startswith(first_page)]
+    names = [row for row in told if row.path.endswith("].name") and row.path.count("[") == 1]
+    assert len(cells) == len(told) - len(names)
+    for row in input_rows(case):
+        if row.origin == DEFAULT and not row.path.startswith(first_page):
+            assert row.name.lower() in left.lower(), row.path
+
+
+def test_that_a_range_stands_with_its_value_and_a_source_with_date_and_person(case):
+    tables = {block.caption: block for block in input_blocks(case) if isinstance(block, Table)}
+    recipient = tables["Inputs: Recipient (recipient in the case file)"]
+    row = next(row for row in recipient.rows if row[0] == "Adults")
+    assert row[1:] == (
+        *("40 (32 to 52, triangular)", "animals", "measured"),
+        *("Spring count; 2026-04; Field team", "adults"),
+    )
+
+
+def test_that_what_was_left_out_stands_under_its_table(case):
+    notes = [block.words for block in input_blocks(case) if isinstance(block, Text)]
+    (life,) = [words for words in notes if words.startswith("Life cycle, left out: ")]
+    assert "Females among young: taken as 0.5" in life
 
 
 def test_that_a_blank_origin_reads_not_stated(rows):

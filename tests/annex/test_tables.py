@@ -125,7 +125,7 @@ def test_that_every_check_is_a_row_of_the_target_table(case, comparison):
     table = tables.target_table(case, comparison, checks)
     assert len(table.rows) == len(checks)
     assert table.rows[0][0] == "1: Gene diversity kept at least 90 % of today’s by 2087"
-    assert [row[-1] for row in table.rows[:2]] == ["no", "yes"]
+    assert [row[-2:] for row in table.rows[:2]] == [("gone", "no animals left"), ("104.4", "yes")]
 
 
 def test_that_a_check_of_many_runs_shows_count_share_and_interval(case, comparison):
