@@ -8,11 +8,12 @@ from dataclasses import dataclass
 import numpy as np
 
 from rescue_planner.annex.curves import Curve, curves, goals
-from rescue_planner.annex.numerals import decimal, decimals_of, year_text
+from rescue_planner.annex.numerals import year_text
 from rescue_planner.annex.panel import MOST_FILLED_BANDS
 from rescue_planner.annex.wording import axis_title, listed, one_line, plan_label
 from rescue_planner.case.document import Case
 from rescue_planner.case.measures import title
+from rescue_planner.projection import reading
 from rescue_planner.projection.leaves_out import leaves_out
 from rescue_planner.projection.results import DEPTH_NAMES, Comparison
 
@@ -191,4 +192,4 @@ def _turn(measure: str, line: Curve) -> str:
 
 
 def _value(measure: str, printed: float) -> str:
-    return decimal(printed, decimals_of(measure, printed))
+    return reading.shown(measure, printed, reading.places(measure, [printed]))

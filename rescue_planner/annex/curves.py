@@ -12,14 +12,10 @@ from rescue_planner.annex.wording import one_line
 from rescue_planner.case.document import Case
 from rescue_planner.case.measures import measure_of
 from rescue_planner.projection.marks import PlanMark, mark
+from rescue_planner.projection.reading import GO_ON_WHEN_GONE, length, target_marks
 from rescue_planner.projection.results import Comparison
 
 FloatArray = NDArray[np.float64]
-
-# What still has a meaning once no animal is left; every other line ends there.
-_AFTER_THE_END = frozenset(
-    {"adults", "young", "persists", "released", "effective_migrants", "cost", "donor_adults"}
-)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -63,7 +59,7 @@ def curves(comparison: Comparison, measure: str) -> tuple[Curve, ...]:
 
 def ends_with_the_last_animal(measure: str) -> bool:
     """Return whether a measure has no meaning once the population is gone."""
-    return measure_of(measure).key not in _AFTER_THE_END
+    return measure_of(measure).key not in GO_ON_WHEN_GONE
 
 
 def _curve(comparison: Comparison, index: int, measure: str) -> Curve | None:
@@ -72,9 +68,7 @@ def _curve(comparison: Comparison, index: int, measure: str) -> Curve | None:
     if series is None:
         return None
     end = comparison.gone_after(plan)
-    stop = comparison.years.size
-    if end is not None and ends_with_the_last_animal(measure):
-        stop = max(end, 1)
+    stop = max(length(comparison, plan, measure), 1)  # one point is left to mark the end at
     factor = scale_of(measure)
     pairs = []
     for low, high in (("q05", "q95"), ("q25", "q75")):
@@ -99,17 +93,12 @@ def _curve(comparison: Comparison, index: int, measure: str) -> Curve | None:
 
 def goals(case: Case, measure: str) -> tuple[Goal, ...]:
     """Return the targets on one measure, one mark for each bound."""
+    sign = " %" if scale_of(measure) != 1.0 else ""
     found = []
-    factor = scale_of(measure)
-    sign = " %" if factor != 1.0 else ""
-    for number, target in enumerate(case.targets, start=1):
-        if target.measure != measure:
-            continue
-        year = float(target.by_year.best)
-        owner = f", {one_line(target.owner)}" if target.owner else ""
-        for word, bound in (("at least", target.at_least), ("at most", target.at_most)):
-            if bound is not None:
-                value = round(float(bound.best) * factor, 10)
-                words = f"Target {number}: {word} {given(value)}{sign}{owner}"
-                found.append(Goal(number, word == "at least", value, year, words))
+    for mark_of in target_marks(case, measure):
+        owner = case.targets[mark_of.number - 1].owner
+        word = "at least" if mark_of.at_least else "at most"
+        words = f"Target {mark_of.number}: {word} {given(mark_of.value)}{sign}"
+        words += f", {one_line(owner)}" if owner else ""
+        found.append(Goal(mark_of.number, mark_of.at_least, mark_of.value, mark_of.year, words))
     return tuple(found)

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 
+from rescue_planner.projection import placing
+
 
 def spread(
     wanted: Sequence[float], heights: Sequence[float], low: float, high: float
@@ -14,16 +16,12 @@ def spread(
     room at the bottom; the caller sees to it that this does not happen.
     """
     order = sorted(range(len(wanted)), key=lambda i: (wanted[i], i))
-    placed = [0.0] * len(wanted)
-    floor = low
-    for i in order:  # push up from below
-        placed[i] = max(wanted[i], floor + heights[i] / 2)
-        floor = placed[i] + heights[i] / 2
-    ceiling = high
-    for i in reversed(order):  # and down again from above
-        placed[i] = min(placed[i], ceiling - heights[i] / 2)
-        ceiling = placed[i] - heights[i] / 2
-    return placed
+    if not order:
+        return []
+    first, last = heights[order[0]], heights[order[-1]]
+    room = max(high - low, sum(heights))  # too many: they begin above and leave it below
+    bottom = high - room + first / 2
+    return list(placing.spread(wanted, heights, bottom, high - last / 2))
 
 
 def wrapped(

@@ -2,17 +2,14 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
 
 from rescue_planner.annex.curves import Curve, Goal
-from rescue_planner.annex.numerals import decimal
 from rescue_planner.case.measures import measure_of
-
-_STEPS = (1.0, 2.0, 2.5, 5.0, 10.0)
+from rescue_planner.projection.placing import tick_texts, ticks
 
 
 @dataclass(frozen=True, slots=True)
@@ -23,30 +20,6 @@ class Scale:
     high: float
     ticks: tuple[float, ...]
     texts: tuple[str, ...]
-
-
-def step(span: float, most: int) -> float:
-    """Return the smallest step of the row 1, 2, 2.5, 5 that needs at most `most` intervals."""
-    rough = span / most
-    power = 10.0 ** math.floor(math.log10(rough))
-    return next(s * power for s in _STEPS if s * power >= rough * (1 - 1e-9))
-
-
-def ticks(low: float, high: float, most: int, whole: bool = False) -> tuple[float, ...]:
-    """Return round values within low..high."""
-    width = step(high - low, most)
-    if whole:
-        width = max(1.0, math.ceil(width))
-    first = math.ceil(low / width - 1e-9)
-    last = math.floor(high / width + 1e-9)
-    return tuple(round(k * width, 12) for k in range(first, last + 1))
-
-
-def _texts(at: Sequence[float]) -> tuple[str, ...]:
-    decimals = 0
-    while decimals < 6 and any(abs(v - round(v, decimals)) > 1e-9 for v in at):
-        decimals += 1
-    return tuple(decimal(v, decimals) for v in at)
 
 
 def values_scale(
@@ -75,7 +48,7 @@ def values_scale(
     room = 0.05 * (high - low)
     below = 0.0 if low == 0.0 else low - room
     at = ticks(below, high + room, most)
-    return Scale(below, high + room, at, _texts(at))
+    return Scale(below, high + room, at, tick_texts(at))
 
 
 def years_scale(first: float, last: float, most: int) -> Scale:

@@ -12,6 +12,7 @@ from rescue_planner.annex.schedule import bound_text
 from rescue_planner.annex.wording import axis_title, listed, one_line, plan_label
 from rescue_planner.case.document import Case, Target
 from rescue_planner.case.measures import title
+from rescue_planner.projection.reading import column_places
 from rescue_planner.projection.results import DEPTH_NAMES, Comparison
 
 # Generations from the start at which the plans are compared, besides the horizon.
@@ -50,22 +51,28 @@ def _heads(comparison: Comparison) -> tuple[str, ...]:
 def _horizon_cells(comparison: Comparison, key: str, last: int) -> tuple[str, ...]:
     series = [comparison.best(plan, key) for plan in comparison.plans]
     first = next((one for one in series if one is not None), None)
-    start = "–" if first is None else value_text(key, float(first.values[0]))
-    return start, *(_cell(comparison, plan, key, last) for plan in comparison.plans)
+    digits = _digits(comparison, key, (0, last))
+    start = "–" if first is None else value_text(key, float(first.values[0]), digits)
+    return start, *(_cell(comparison, plan, key, last, digits) for plan in comparison.plans)
 
 
-def _cell(comparison: Comparison, plan: str, key: str, t: int) -> str:
+def _digits(comparison: Comparison, key: str, at: Sequence[int]) -> int:
+    """Return the decimals that all values of a measure at these t share."""
+    return column_places(comparison, key, comparison.plans, at)
+
+
+def _cell(comparison: Comparison, plan: str, key: str, t: int, digits: int) -> str:
     """Return a value with its 5 to 95 % range where there is one; `gone` where none is left."""
     series = comparison.best(plan, key)
     if series is None:
         return "not computed"
     if _is_gone(comparison, plan, key, t):
         return GONE
-    value = value_text(key, float(series.values[t]))
+    value = value_text(key, float(series.values[t]), digits)
     low, high = (comparison.get(plan, series.depth, key, q) for q in ("q05", "q95"))
     if low is None or high is None or t == 0:
         return value
-    between = " to ".join(value_text(key, float(q.values[t])) for q in (low, high))
+    between = " to ".join(value_text(key, float(q.values[t]), digits) for q in (low, high))
     return f"{value} ({between})"
 
 
@@ -87,9 +94,10 @@ def course_tables(comparison: Comparison, measures: Sequence[str]) -> tuple[Tabl
 
 
 def _course_table(comparison: Comparison, key: str) -> Table:
-    rows = []
-    for t in chosen_steps(comparison):
-        cells = (_cell(comparison, plan, key, t) for plan in comparison.plans)
+    rows, steps = [], chosen_steps(comparison)
+    digits = _digits(comparison, key, steps)
+    for t in steps:
+        cells = (_cell(comparison, plan, key, t, digits) for plan in comparison.plans)
         rows.append((year_text(float(comparison.years[t])), str(t), *cells))
     return Table(
         caption=f"{axis_title(comparison, key)}",

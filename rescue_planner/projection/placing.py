@@ -5,8 +5,10 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import accumulate, pairwise
 
 _STEPS = (1.0, 2.0, 5.0, 10.0)
+THIN = "\u202f"
 
 
 def tick_step(length: float, most: int) -> float:
@@ -52,9 +54,10 @@ def round_range(low: float, high: float, most: int = 4) -> tuple[float, float]:
 
 
 def tick_texts(values: Sequence[float]) -> tuple[str, ...]:
-    """Return tick values as text, all with the same, smallest sufficient number of decimals."""
+    """Return tick values as text: the fewest decimals that do for all, thousands set apart."""
     places = max((_places(value) for value in values), default=0)
-    return tuple(f"{value + 0.0:.{places}f}".replace("-", "−") for value in values)
+    texts = (f"{value + 0.0:,.{places}f}" for value in values)
+    return tuple(text.replace(",", THIN).replace("-", "−") for text in texts)
 
 
 def _places(value: float) -> int:
@@ -62,34 +65,49 @@ def _places(value: float) -> int:
     return len(text.partition(".")[2])
 
 
-def spread(wanted: Sequence[float], gap: float, low: float, high: float) -> tuple[float, ...]:
+def spread(
+    wanted: Sequence[float], gap: float | Sequence[float], low: float, high: float
+) -> tuple[float, ...]:
     """Return positions near `wanted`, at least `gap` apart, within [low, high].
 
     Order is kept and the sum of squared moves is the least there is: neighbours that are too
-    close are pooled and moved together (isotonic regression on position minus rank times gap).
+    close are pooled and moved together (isotonic regression on position minus the gaps below it).
+
+    Parameters
+    ----------
+    gap : float or sequence of float
+        The least distance of neighbours; or the height of each label, in the order of `wanted`:
+        neighbours then stand half of both apart.
 
     Raises
     ------
     ValueError
         When so many labels do not fit.
     """
-    count = len(wanted)
-    if (count - 1) * gap > (high - low) + 1e-9:
-        raise ValueError(f"{count} labels {gap} apart do not fit between {low} and {high}")
-    order = sorted(range(count), key=lambda i: (wanted[i], i))
-    blocks: list[tuple[float, int]] = []  # mean of (position - rank * gap), how many
+    order = sorted(range(len(wanted)), key=lambda i: (wanted[i], i))
+    below = _room_below([gap[i] for i in order] if isinstance(gap, Sequence) else gap, len(order))
+    if order and below[-1] > (high - low) + 1e-9:
+        raise ValueError(f"{len(order)} labels do not fit between {low} and {high}")
+    blocks: list[tuple[float, int]] = []  # mean of (position - room below), how many
     for rank, i in enumerate(order):
-        mean, size = wanted[i] - rank * gap, 1
+        mean, size = wanted[i] - below[rank], 1
         while blocks and blocks[-1][0] > mean:
             other, more = blocks.pop()
             mean, size = (mean * size + other * more) / (size + more), size + more
         blocks.append((mean, size))
     free = [mean for mean, size in blocks for _ in range(size)]
-    top = high - (count - 1) * gap
-    placed = [0.0] * count
+    placed = [0.0] * len(order)
     for rank, i in enumerate(order):
-        placed[i] = min(max(free[rank], low), top) + rank * gap
+        placed[i] = min(max(free[rank], low), high - below[-1]) + below[rank]
     return tuple(placed)
+
+
+def _room_below(gap: float | Sequence[float], count: int) -> tuple[float, ...]:
+    """Return how far each label must stay above the lowest one, in rising order."""
+    if not isinstance(gap, Sequence):
+        return tuple(rank * gap for rank in range(count))
+    steps = [(one + other) / 2 for one, other in pairwise(gap)]
+    return tuple(accumulate(steps, initial=0.0)) if count else ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -16,7 +16,7 @@ from numpy.typing import NDArray
 from rescue_planner.case.document import Case
 from rescue_planner.case.measures import measure_of, split, title
 from rescue_planner.projection.marks import mark
-from rescue_planner.projection.placing import round_range, ticks
+from rescue_planner.projection.placing import THIN, round_range, ticks
 from rescue_planner.projection.results import Comparison, Depth, Series
 
 FloatArray = NDArray[np.float64]
@@ -36,7 +36,6 @@ _OWN_PLACES = {
     "trait_mean": 2,
     "trait_lag": 2,
 }
-_THIN = "\u202f"
 
 
 # numbers
@@ -72,8 +71,10 @@ def number(value: float, decimals: int) -> str:
     """Return a number for people: true minus sign, thin spaces between thousands."""
     if math.isnan(value):
         return "–"
+    if math.isinf(value):
+        return "∞" if value > 0 else "−∞"
     text = f"{round(value, decimals) + 0.0:,.{decimals}f}"
-    return text.replace(",", _THIN).replace("-", "−")
+    return text.replace(",", THIN).replace("-", "−")
 
 
 def shown(key: str, value: float, decimals: int) -> str:
@@ -91,7 +92,7 @@ def shown(key: str, value: float, decimals: int) -> str:
 
 def plain(text: str) -> str:
     """Return a shown number as a spreadsheet reads it: no thin spaces, a hyphen for minus."""
-    return text.replace(_THIN, "").replace("−", "-")
+    return text.replace(THIN, "").replace("−", "-")
 
 
 def unit_text(comparison: Comparison, key: str) -> str:
@@ -233,8 +234,12 @@ def references(comparison: Comparison, key: str) -> tuple[tuple[str, float], ...
 
 @dataclass(frozen=True, slots=True)
 class TargetMark:
-    """A target on a chart: where it stands (its year included), which side is met, whose it is."""
+    """A target on a chart: where it stands (its year included), which side is met, whose it is.
 
+    `number` counts the targets of the case from 1.
+    """
+
+    number: int
     year: float
     value: float
     at_least: bool
@@ -244,16 +249,16 @@ class TargetMark:
 def target_marks(case: Case, key: str) -> tuple[TargetMark, ...]:
     """Return the targets on one measure, a mark for each bound."""
     marks = []
-    for target in case.targets:
+    for count, target in enumerate(case.targets, start=1):
         if target.measure != key:
             continue
         for bound, at_least in ((target.at_least, True), (target.at_most, False)):
             if bound is None:
                 continue
-            value = float(bound.best) * scale(key)
+            value = round(float(bound.best) * scale(key), 10)  # 0.07 is 7 %, not 7.000000000000001
             sign = "≥" if at_least else "≤"
             words = f"{sign} {value:g}, {target.owner or 'owner not stated'}"
-            marks.append(TargetMark(float(target.by_year.best), value, at_least, words))
+            marks.append(TargetMark(count, float(target.by_year.best), value, at_least, words))
     return tuple(marks)
 
 

@@ -10,6 +10,7 @@ from rescue_planner.annex.methods import assumptions, methods, not_included
 from rescue_planner.annex.schedule import action_sentences, rule_sentences, schedule_table
 from rescue_planner.case.document import Case
 from rescue_planner.projection.compare import compare
+from rescue_planner.projection.value_table import value_table
 
 
 def test_that_a_repeated_release_is_expanded_to_its_years(case):
@@ -125,7 +126,7 @@ def test_that_every_check_is_a_row_of_the_target_table(case, comparison):
     table = tables.target_table(case, comparison, checks)
     assert len(table.rows) == len(checks)
     assert table.rows[0][0] == "1: Gene diversity kept at least 90 % of today’s by 2087"
-    assert [row[-2:] for row in table.rows[:2]] == [("gone", "no animals left"), ("104.4", "yes")]
+    assert [row[-2:] for row in table.rows[:2]] == [("gone", "no animals left"), ("120.1", "yes")]
 
 
 def test_that_a_check_of_many_runs_shows_count_share_and_interval(case, comparison):
@@ -169,3 +170,21 @@ def test_that_assumptions_are_listed_by_depth(case, comparison):
 def test_that_every_head_and_caption_names_a_unit(comparison, measure):
     table = tables.course_tables(comparison, [measure])[0]
     assert comparison.unit(measure) in table.caption
+
+
+def test_that_print_and_screen_show_the_same_digits(comparison):
+    """Both tables of the annex against the table that the screen draws, value by value."""
+    last = comparison.years.size - 1
+    for measure in comparison.measures:
+        printed = tables.course_tables(comparison, [measure])[0]
+        steps = tables.chosen_steps(comparison)
+        years = [float(comparison.years[t]) for t in steps]
+        screen = value_table(comparison, comparison.plans, [measure], years, "measures")
+        for row, shown in zip(printed.rows, screen.rows, strict=True):
+            cells = [cell.partition(" (")[0] for cell in row[2:]]
+            assert cells == list(shown[3:]), (measure, row)
+        ends = [float(comparison.years[t]) for t in (0, last)]
+        screen = value_table(comparison, comparison.plans, [measure], ends, "measures")
+        row = tables.horizon_table(comparison, [measure]).rows[0]
+        cells = [cell.partition(" (")[0] for cell in row[-len(comparison.plans) :]]
+        assert cells == list(screen.rows[1][3:]), measure

@@ -27,8 +27,10 @@ def test_that_decimals_are_set_as_print_sets_them(value, decimals, text):
     ("key", "value", "text"),
     [
         ("gene_diversity_kept", 0.9134, "91.3"),
-        ("inbreeding", 0.1234, "0.12"),
-        ("inbreeding", -0.061, "−0.06"),
+        ("inbreeding", 0.1234, "0.123"),
+        ("inbreeding", -0.061, "−0.061"),
+        ("allele_kept:winter coat", 0.99999, "> 99.9"),
+        ("adults", 0.3, "0.3"),
         ("gene_diversity", 0.42, "0.420"),
         ("adults", 40.0, "40"),
         ("adults", 3.04, "3.0"),

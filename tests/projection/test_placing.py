@@ -120,3 +120,20 @@ def test_that_words_go_where_they_cover_least():
     boxes = [(0.0, 0.0, 10.0, 10.0), (20.0, 0.0, 10.0, 10.0), (40.0, 0.0, 10.0, 10.0)]
     assert quietest(boxes, [(5.0, 5.0), (25.0, 5.0)]) == 2
     assert quietest(boxes, []) == 0
+
+
+def test_that_thousands_are_set_apart_on_an_axis():
+    assert tick_texts((0.0, 100000.0)) == ("0", "100\u202f000")
+
+
+@given(
+    st.lists(st.tuples(st.floats(0, 60), st.floats(1, 5)), min_size=1, max_size=10),
+)
+def test_that_labels_of_different_heights_do_not_overlap(labels):
+    wanted, heights = zip(*labels, strict=True)
+    placed = spread(wanted, heights, 0.0, 100.0)
+    order = sorted(range(len(placed)), key=lambda i: placed[i])
+    for one, other in itertools.pairwise(order):
+        assert placed[other] - placed[one] >= (heights[one] + heights[other]) / 2 - CLOSE
+    assert min(placed) >= 0.0
+    assert max(placed) <= 100.0 + CLOSE
