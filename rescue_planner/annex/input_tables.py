@@ -28,8 +28,8 @@ _LISTS = {
     "donors": "Donor",
     "loci": "Tracked locus",
     "plans": "Plan",
-    "what_ifs": "What-if",
 }
+_TOGETHER = {"targets": "Targets", "what_ifs": "What-ifs"}
 # The first page of the annex has these in full.
 _SAID = frozenset({"title", "species", "authority", "decision"})
 
@@ -88,8 +88,8 @@ def _is_name(row: InputRow, group: _Group) -> bool:
 def _group(case: Case, path: str) -> tuple[str, str]:
     steps = parse_path(path)
     first = str(steps[0])
-    if first == "targets":
-        return "Targets", "targets"
+    if first in _TOGETHER:
+        return _TOGETHER[first], first
     if first in _LISTS and len(steps) > 1 and isinstance(steps[1], int):
         name = one_line(getattr(case, first)[steps[1]].name)
         return f"{_LISTS[first]} {name}", format_path(steps[:2])

@@ -34,7 +34,7 @@ def _methods(case: Case, comparison: Comparison) -> Iterator[str]:
     yield _inbreeding(case)
     yield (
         "Ancestry from donor d: a_d′ = (1 − m) a_d + m_d, from its share at the start. "
-        "Source: Verdu & Rosenberg 2011."
+        "Source: Bernstein 1931."
     )
     if case.loci:
         yield from _loci(comparison)

@@ -95,7 +95,7 @@ def draw_overview(
 ) -> Figure:
     """Draw a panel for each of `measures`; call within `sheet.printed()`."""
     key_columns = 1 if width < 120 else 2
-    found = [scales(case, comparison, measure, _YEAR_TICKS, 4) for measure in measures]
+    found = [scales(case, comparison, measure, _YEAR_TICKS, 5) for measure in measures]
     widest = max(text_width(words, _TEXT_PT) for scale in found for words in scale.values.texts)
     grid = _grid(width, len(measures), -(-len(comparison.plans) // key_columns), widest + 2.0)
     whole = replace(grid.panel, width=width, height=grid.height)

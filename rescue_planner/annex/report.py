@@ -21,7 +21,11 @@ from rescue_planner.annex.tables import (
 )
 from rescue_planner.annex.wording import clean, listed, one_line, plan_label
 from rescue_planner.case.document import Case, Change, WhatIf
+from rescue_planner.case.fields import definition_at
+from rescue_planner.case.paths import parse_path
+from rescue_planner.case.raw import to_raw
 from rescue_planner.case.remarks import Remark
+from rescue_planner.case.spoken import spoken_part
 from rescue_planner.projection.results import DEPTH_NAMES, Comparison
 
 
@@ -84,10 +88,7 @@ def _decision(content: Content) -> Section:
             ("Goal", decision.goal),
             ("Decided by", decision.decided_by),
             ("Decision by", decision.by_date),
-            (
-                "Other causes of decline, and what is done about them",
-                decision.other_causes_of_decline,
-            ),
+            ("Other causes of decline", decision.other_causes_of_decline),
         )
     )
     table = Table("What is to be decided", ("Matter", "As stated in the case"), rows)
@@ -106,8 +107,8 @@ def _what_if(content: Content) -> tuple[Block, ...]:
 
 
 def _asked(what_if: WhatIf) -> str:
-    by = f" Asked by {one_line(what_if.asked_by)}." if what_if.asked_by else ""
-    return by + (f" {one_line(what_if.date)}." if what_if.date else "")
+    known = [one_line(part) for part in (what_if.asked_by, what_if.date) if part]
+    return f" Asked by {', '.join(known)}." if what_if.asked_by else ""
 
 
 def _change(change: Change) -> str:
@@ -116,7 +117,9 @@ def _change(change: Change) -> str:
         parts.append(f"times {change.times.best:g}")
     if change.set is not None:
         parts.append(f"set to {change.set.best:g}")
-    return f"{change.path}: {listed(parts)}"
+    definition = definition_at(parse_path(change.path))
+    name = change.path if definition is None else f"{definition.name} ({change.path})"
+    return f"{name}: {listed(parts)}"
 
 
 def _plans(content: Content) -> tuple[Section, ...]:
@@ -238,7 +241,7 @@ def _remarks(content: Content) -> Section:
         ("Where", "Remark", "Answer", "By, date"),
         tuple(
             (
-                row["path"] or "case",
+                _where(content.case, row["path"]),
                 clean(row["text"]),
                 "not answered" if row["answer"] is None else clean(row["answer"]["reason"]),
                 "–" if row["answer"] is None else _by(row["answer"]),
@@ -247,6 +250,17 @@ def _remarks(content: Content) -> Section:
         ),
     )
     return Section("Remarks and answers", (table,))
+
+
+def _where(case: Case, path: str) -> str:
+    """Return a remark's place in words; a donor named behind a plan follows it."""
+    part, _, also = path.partition(":")
+    try:
+        words = spoken_part(to_raw(case), parse_path(part)) if part else "case"
+    except ValueError:
+        words = part
+    words = f"{words}, {also}" if also else words
+    return one_line(words[:1].upper() + words[1:])
 
 
 def _by(answer: Mapping[str, str | None]) -> str:
