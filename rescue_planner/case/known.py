@@ -40,6 +40,7 @@ SHARE_OF_ADULTS = (0.15, 0.1, 0.2)
 REFERENCE_DIVERSITY = (0.68, 0.5, 0.8)
 LETHAL_EQUIVALENTS = (7.0, 3.1, 12.0)
 LEAST_FST_GUESS = 0.05
+WHO_IS_COUNTED = "adults alive at one time, before breeding"  # as the question puts it
 
 
 @dataclass(frozen=True, slots=True)
@@ -111,6 +112,7 @@ def draft(known: Known) -> Draft:
     reference, diversity = _diversities(known, size, length, years, said)
     recipient: Raw = {
         "name": known.recipient,
+        "who_is_counted": WHO_IS_COUNTED,
         "adults": known.adults,
         "effective_size": size,
         "gene_diversity": diversity,

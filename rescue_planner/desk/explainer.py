@@ -68,7 +68,9 @@ class Explainer(QWidget):
                 label.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
-        outer.addWidget(scrolled(inner))
+        area = scrolled(inner, reachable=True)
+        area.setAccessibleName("Explainer")
+        outer.addWidget(area)
         self.clear()
 
     def show_page(self, question: str, about: str) -> None:

@@ -36,7 +36,7 @@ def _dialog(parent: QWidget, title: str, inner: QWidget) -> QDialog:
     outer.setContentsMargins(*[theme.UNIT * 3] * 4)
     outer.setSpacing(theme.UNIT * 2)
     outer.addWidget(text(title, "title"))
-    outer.addWidget(scrolled(inner), 1)
+    outer.addWidget(scrolled(inner, reachable=True), 1)
     buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Close)
     buttons.rejected.connect(dialog.reject)
     outer.addWidget(buttons)

@@ -99,17 +99,17 @@ class JobRunner(QObject):
 
     def _tell_done(self, result: object) -> None:
         self._running = False
+        self.idle.emit()  # before what follows: it may ask the user something, or start a job
         if self._done is not None:
             self._done(result)
         self.finished.emit(result)
-        self.idle.emit()
 
     def _tell_failed(self, error: Exception) -> None:
         self._running = False
+        self.idle.emit()
         if self._failed is not None:
             self._failed(error)
         self.failed.emit(error)
-        self.idle.emit()
 
     def _tell_cancelled(self) -> None:
         self._running = False

@@ -88,7 +88,8 @@ class Menus(QObject):
         menu.addSeparator()
         action(menu, "&Close case", window.close_case, "Ctrl+W")
         quit_ = action(menu, "&Quit", window.close, "Ctrl+Q")
-        quit_.setShortcuts([QKeySequence(keys.Quit), QKeySequence("Ctrl+Q")])
+        both = [QKeySequence("Ctrl+Q"), QKeySequence(keys.Quit)]
+        quit_.setShortcuts(both[:1] if both[1] in (both[0], QKeySequence()) else both)
         quit_.setMenuRole(QAction.MenuRole.QuitRole)
         self.needs_case += [saved, as_, export, menu.actions()[-2]]
 

@@ -20,6 +20,13 @@ from rescue_planner.desk.field_base import Bound, FieldRow, asks_to_undo
 from rescue_planner.desk.numbers import range_in_words, read_number, stepped, written
 from rescue_planner.desk.widgets import Link
 
+CHOSEN_BY_KEY = (
+    Qt.FocusReason.TabFocusReason,
+    Qt.FocusReason.BacktabFocusReason,
+    Qt.FocusReason.ShortcutFocusReason,
+    Qt.FocusReason.OtherFocusReason,  # the program put the focus there
+)
+
 
 class NumberEdit(QLineEdit):
     """The line a number is typed in; Up, Down, Page Up and Page Down step it."""
@@ -59,7 +66,7 @@ class NumberEdit(QLineEdit):
 
     def focusInEvent(self, event: QFocusEvent) -> None:
         super().focusInEvent(event)
-        if event.reason() in (Qt.FocusReason.TabFocusReason, Qt.FocusReason.BacktabFocusReason):
+        if event.reason() in CHOSEN_BY_KEY:
             self.selectAll()
         self.focused.emit()
 

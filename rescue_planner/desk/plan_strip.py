@@ -22,7 +22,7 @@ from rescue_planner.desk.widgets import rule, text
 from rescue_planner.projection.marks import PlanMark, mark
 
 SAMPLE = 36
-NAME_WIDTHS = (28, 22, 17, 13, 10, 7, 4, 0)  # in letters; the widest that fits is taken
+NAME_WIDTHS = (48, 36, 28, 22, 17, 13, 10, 7, 4, 0)  # in letters; the widest that fits is taken
 MOST_ROWS = 2
 LARGE, MOST_ROWS_LARGE = 1.5, 3  # large text takes a row more before names are shortened
 

@@ -135,9 +135,15 @@ def bring_into_view(widget: QWidget) -> None:
         above = above.parentWidget()
 
 
-def scrolled(inner: QWidget) -> QScrollArea:
-    """Return `inner` in an area that scrolls down only."""
+def scrolled(inner: QWidget, *, reachable: bool = False) -> QScrollArea:
+    """Return `inner` in an area that scrolls down only.
+
+    `reachable` where it holds text alone, so that keys can scroll it; else its fields bring
+    themselves into view, and the area would be a stop of Tab that nobody sees.
+    """
     area = QScrollArea()
+    policy = Qt.FocusPolicy.StrongFocus if reachable else Qt.FocusPolicy.NoFocus
+    area.setFocusPolicy(policy)
     area.setWidgetResizable(True)
     area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
     area.setFrameShape(QFrame.Shape.NoFrame)

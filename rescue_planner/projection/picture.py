@@ -154,11 +154,14 @@ def _widest(comparison: Comparison, key: str, decimals: int) -> str:
 
 def no_input(case: Case, key: str) -> str:
     """Return why a measure that has values is no result: nothing was entered for it to show."""
-    if split(key)[0] == "relative_first_year_survival" and case.inbreeding_cost is None:
+    base = split(key)[0]
+    if base == "relative_first_year_survival" and case.inbreeding_cost is None:
         return (
             "No inbreeding cost entered: survival is taken as that of outbred young. Add the cost "
             "on the Case page."
         )
+    if base == "donor_ancestry" and not case.donors:
+        return "No donor entered: all gene copies are the recipient’s. Add one on the Case page."
     return ""
 
 

@@ -75,7 +75,8 @@ def usual_years(comparison: Comparison) -> tuple[float, ...]:
 def years_outside(comparison: Comparison, years: tuple[float, ...]) -> str:
     """Return a sentence on years outside the projection, empty where there are none."""
     first, last = float(comparison.years[0]), float(comparison.years[-1])
-    outside = [f"{year:g}" for year in years if not first - 0.5 <= year <= last + 0.5]
+    end = math.ceil(last - 1e-6)  # the whole year by which the last value is reached
+    outside = [f"{year:g}" for year in years if not first - 0.5 <= year <= max(end, last + 0.5)]
     if not outside:
         return ""
     years_out = ", ".join(outside)

@@ -20,6 +20,11 @@ def test_that_three_males_and_twenty_females_give_an_effective_size_of_10_4() ->
     assert any("4 · 3 · 20 / 23 = 10.4" in words for words in made.workings)
 
 
+def test_that_a_new_case_says_who_is_counted() -> None:
+    counted = draft(Known(46, 2027)).case.recipient.who_is_counted
+    assert counted == "adults alive at one time, before breeding"
+
+
 def test_that_unknown_breeders_borrow_a_tenth_to_a_fifth_of_the_adults() -> None:
     size = draft(Known(40, 2027)).case.recipient.effective_size
     assert (size.low, size.best, size.high) == (4.0, 6.0, 8.0)

@@ -8,6 +8,7 @@ from pathlib import Path
 
 import matplotlib
 import pytest
+from PySide6.QtCore import QCoreApplication, QEvent
 from PySide6.QtGui import QFont, QFontDatabase
 from PySide6.QtWidgets import QApplication
 
@@ -72,6 +73,9 @@ SMALL = {
 }
 
 
+USUAL = "light 1.0"  # the look as the window keeps it in mind
+
+
 @pytest.fixture(scope="session", autouse=True)
 def one_font(qapp: QApplication) -> None:
     """Fix the font: what is clipped must not depend on the machine."""
@@ -110,7 +114,7 @@ def desk(qapp: QApplication) -> Iterator[Desk]:
 
 
 @pytest.fixture
-def make_window(qtbot) -> Iterator[Callable[[], DeskWindow]]:
+def make_window(qtbot, qapp: QApplication) -> Iterator[Callable[[], DeskWindow]]:
     made: list[DeskWindow] = []
 
     def make() -> DeskWindow:
@@ -126,9 +130,13 @@ def make_window(qtbot) -> Iterator[Callable[[], DeskWindow]]:
 
     yield make
     for window in made:
-        window.desk.view.set_text_scale(1.0)
         window.finder.close()
         window.desk.close()
+    # pytest-qt has closed them by now; once they are gone, restyling the program costs little
+    QCoreApplication.sendPostedEvents(None, QEvent.Type.DeferredDelete.value)
+    if qapp.property("look") != USUAL:
+        theme.apply(qapp, "light", 1.0)
+        qapp.setProperty("look", USUAL)
 
 
 def _let_go(window: DeskWindow) -> None:

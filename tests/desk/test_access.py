@@ -42,49 +42,55 @@ def _shown(area: QWidget, kinds: tuple[type, ...]) -> list[QWidget]:
     ]
 
 
-@pytest.mark.parametrize("page", PAGES)
-def test_that_everything_that_can_be_acted_on_has_a_name(window, page) -> None:
+def _by_page(window, find) -> dict[str, list[object]]:
+    """Show each page and return what `find` finds wrong on it, pages without faults left out."""
+    found = {}
+    for page in PAGES:
+        window.show_page(page)
+        if wrong := find(page):
+            found[page] = wrong
+    return found
+
+
+def test_that_everything_that_can_be_acted_on_has_a_name_a_unit_and_can_be_reached(window) -> None:
     _full_case(window)
-    window.show_page(page)
-    nameless = [one for one in _shown(window, ACTED_ON) if not (one.accessibleName() or "").strip()]
-    assert nameless == []
+
+    def wrong(page: str) -> list[object]:
+        nameless = [x for x in _shown(window, ACTED_ON) if not (x.accessibleName() or "").strip()]
+        numbers = [
+            one
+            for one in _shown(window.pages[page], (QLineEdit,))
+            if one.objectName() in ("number", "compact-number")
+        ]
+        bare = [one.accessibleName() for one in numbers if "," not in one.accessibleName()]
+        unitless = [name for name in bare if "Replicates" not in name]
+        unreached = [
+            one.accessibleName()
+            for one in _shown(window.stack, ACTED_ON)
+            if not one.focusPolicy() & Qt.FocusPolicy.TabFocus
+        ]
+        return [*nameless, *unitless, *unreached]
+
+    assert _by_page(window, wrong) == {}
 
 
-@pytest.mark.parametrize("page", PAGES)
-def test_that_names_of_numbers_carry_their_unit(window, page) -> None:
-    window.show_page(page)
-    numbers = [
-        one
-        for one in _shown(window.pages[page], (QLineEdit,))
-        if one.objectName() in ("number", "compact-number")
-    ]
-    assert all("," in one.accessibleName() or "Replicates" in one.accessibleName()
-               for one in numbers)  # fmt: skip
-
-
-@pytest.mark.parametrize("page", PAGES)
 @pytest.mark.parametrize("scale", [1.0, 2.0])
-def test_that_targets_are_at_least_24_pixels(window, page, scale) -> None:
+def test_that_targets_are_at_least_24_pixels_and_no_text_is_cut_off(qtbot, window, scale) -> None:
     _full_case(window)
     window.desk.view.set_text_scale(scale)
-    window.show_page(page)
-    small = [
-        (one.accessibleName(), one.width(), one.height())
-        for one in _shown(window, ACTED_ON)
-        if min(one.width(), one.height()) < theme.TARGET
-    ]
-    assert small == []
+    window.resize(1280, 720)
 
+    def wrong(page: str) -> list[object]:
+        if page == "known":
+            window.pages["known"].questions["adults"].edit.setText("46")
+        _wait_until_whole(qtbot, window.pages[page])
+        return [
+            (one.accessibleName(), one.width(), one.height())
+            for one in _shown(window, ACTED_ON)
+            if min(one.width(), one.height()) < theme.TARGET
+        ]
 
-@pytest.mark.parametrize("page", PAGES)
-def test_that_everything_can_be_reached_by_keyboard(window, page) -> None:
-    window.show_page(page)
-    out_of_reach = [
-        one.accessibleName()
-        for one in _shown(window.stack, ACTED_ON)
-        if not one.focusPolicy() & Qt.FocusPolicy.TabFocus
-    ]
-    assert out_of_reach == []
+    assert _by_page(window, wrong) == {}
 
 
 def _cut_off(area: QWidget) -> list[str]:
@@ -126,18 +132,6 @@ def _area_of(widget: QWidget) -> QScrollArea | None:
             return above if above.viewport().isAncestorOf(widget) else None
         above = above.parentWidget()
     return None
-
-
-@pytest.mark.parametrize("page", PAGES)
-@pytest.mark.parametrize("scale", [1.0, 2.0])
-def test_that_no_text_is_cut_off(qtbot, window, page, scale) -> None:
-    _full_case(window)
-    window.desk.view.set_text_scale(scale)
-    window.resize(1280, 720)
-    window.show_page(page)
-    if page == "known":
-        window.pages["known"].questions["adults"].edit.setText("46")
-    _wait_until_whole(qtbot, window.pages[page])
 
 
 def test_that_the_frame_of_the_window_is_not_cut_off_at_twice_the_size(qtbot, window) -> None:

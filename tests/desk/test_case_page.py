@@ -48,7 +48,7 @@ def test_that_a_donor_in_use_is_not_removed_and_the_page_says_where(qtbot, windo
     _press(qtbot, section, "Remove High Meadow")
     assert [donor.name for donor in window.desk.document.case.donors] == ["High Meadow"]
     assert section.problem.isVisible()
-    assert "plans[1].releases[0]" in section.problem.text()
+    assert "release 1 of plan “Pairs”" in section.problem.text()
 
 
 def test_that_a_renamed_donor_is_renamed_everywhere(qtbot, window) -> None:

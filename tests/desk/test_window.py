@@ -7,8 +7,8 @@ from pathlib import Path
 
 import pytest
 from PySide6.QtCore import QMimeData, QPointF, Qt, QUrl
-from PySide6.QtGui import QDropEvent
-from PySide6.QtWidgets import QApplication, QFileDialog, QMessageBox
+from PySide6.QtGui import QAction, QDropEvent
+from PySide6.QtWidgets import QAbstractButton, QApplication, QFileDialog, QMessageBox
 
 from rescue_planner import places
 from rescue_planner.case.edits import set_value
@@ -170,6 +170,28 @@ def test_that_a_page_reached_by_its_key_has_the_focus(qtbot, window) -> None:
     focused = QApplication.focusWidget()
     assert window.pages["plans"].isAncestorOf(focused)
     assert focused.accessibleName() == "Plans"
+
+
+def test_that_no_two_things_answer_to_the_same_key(window) -> None:
+    # Qt calls a key given twice ambiguous and does nothing, even where both are one action's
+    for key in ("case", "plans", "compare"):
+        window.show_page(key)
+    keys = [
+        key.toString()
+        for one in window.findChildren(QAction)
+        for key in one.shortcuts()
+        if one.isEnabled()
+    ]
+    keys += [one.shortcut().toString() for one in window.findChildren(QAbstractButton)]
+    held = [key for key in keys if key]
+    assert "Ctrl+Q" in held
+    assert sorted(held) == sorted(set(held))
+
+
+def test_that_a_new_case_begins_at_its_first_question(window) -> None:
+    window.show_known()
+    page = window.pages["known"]
+    assert QApplication.focusWidget() is page.title
 
 
 def test_that_the_explainer_of_a_page_tells_what_it_answers(window) -> None:

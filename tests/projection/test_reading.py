@@ -207,7 +207,14 @@ def test_that_survival_without_an_inbreeding_cost_is_no_result():
     assert made.empty.startswith("No inbreeding cost entered")
     assert made.lines == ()
     assert no_input(bare, "inbreeding") == ""
+    assert no_input(bare, "donor_ancestry") == ""
     assert no_input(marsh(), "relative_first_year_survival") == ""
+
+
+def test_that_ancestry_without_a_donor_is_no_result():
+    alone = marsh(donors=[], loci=[], plans=[{"name": "No releases"}], targets=[])
+    made = picture(compare(alone), alone, "donor_ancestry", ("No releases",))
+    assert made.empty.startswith("No donor entered")
 
 
 def test_that_all_plans_hidden_is_said_in_words(case, comparison):

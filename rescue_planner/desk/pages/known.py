@@ -190,6 +190,7 @@ class KnownPage(QWidget):
         narrow = self.width() < self.fontMetrics().averageCharWidth() * SIDE_BY_SIDE
         direction = QBoxLayout.Direction
         self._box.setDirection(direction.TopToBottom if narrow else direction.LeftToRight)
+        self._box.setStretch(1, 2 if narrow else 4)  # the questions need the height
 
     def _right(self) -> QWidget:
         right = QWidget()
