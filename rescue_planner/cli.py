@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import os
 import re
 import shutil
 import sys
@@ -14,6 +15,7 @@ from typing import TYPE_CHECKING, NoReturn, TextIO
 from rescue_planner import __version__, places
 from rescue_planner.case.file import CaseFileError, load
 from rescue_planner.case.problems import InvalidCase, Problem
+from rescue_planner.case.spoken import counted
 from rescue_planner.case.what_if import applied
 
 if TYPE_CHECKING:
@@ -86,6 +88,9 @@ def main(argv: Sequence[str] | None = None) -> int:
         return _complain(str(error), PROBLEMS)
     except InvalidCase as error:
         return _print_problems(error.problems)
+    except BrokenPipeError:  # whoever read along has closed: nothing more to say to anybody
+        sys.stdout = open(os.devnull, "w", encoding="utf-8")  # noqa: PTH123, SIM115 - until the end
+        return STOPPED
     except KeyboardInterrupt:
         return _complain("Stopped. A folder without record.json holds an unfinished run.", STOPPED)
 
@@ -113,6 +118,7 @@ def _write(stream: TextIO, sentence: str) -> None:
     line = _CONTROL.sub(" ", sentence)
     encoding = getattr(stream, "encoding", None) or "utf-8"
     stream.write(f"{line.encode(encoding, 'backslashreplace').decode(encoding)}\n")
+    stream.flush()  # a reader who has gone is noticed here, not when the program ends
 
 
 def _run(asked: argparse.Namespace) -> int:
@@ -146,9 +152,11 @@ def _run(asked: argparse.Namespace) -> int:
         )
     except ExportError as error:
         return _complain(str(error), USAGE)
-    _say(f"{case.title}: {len(comparison.plans)} plans, {len(written.files)} files in {asked.to}")
+    plans_told = counted(len(comparison.plans), "plan")
+    _say(f"{case.title}: {plans_told}, {len(written.files)} files in {asked.to}")
     if found:
-        _say(f"{len(found)} remarks; see annex.html, or: rescue-planner check {asked.case}")
+        remarks_told = counted(len(found), "remark")
+        _say(f"{remarks_told}; see annex.html, or: rescue-planner check {asked.case}")
     _say(CAUTION)
     return DONE
 
@@ -236,7 +244,7 @@ def _check(asked: argparse.Namespace) -> int:
     found = every_remark(case)
     for remark in found:
         _say(f"remark {remark.key} at {remark.path or 'case'}: {remark.text}")
-    _say(f"{case.title}: no problems, {len(found)} remarks.")
+    _say(f"{case.title}: no problems, {counted(len(found), 'remark')}.")
     return DONE
 
 

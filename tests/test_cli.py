@@ -442,6 +442,18 @@ def test_that_a_what_if_that_makes_a_problem_is_a_problem(case_file, capsys):
     assert said.startswith("recipient.effective_size: Under the what-if “Ne is 99”")
 
 
+def test_that_a_run_that_is_stopped_says_so_and_leaves_no_record(case_file, capsys, monkeypatch):
+    from rescue_planner.annex import export
+
+    def stop(*_: object) -> None:
+        raise KeyboardInterrupt
+
+    monkeypatch.setattr(export, "pictures", stop)
+    folder = case_file.parent / "out"
+    assert "record.json" in complaint(capsys, ["run", case_file, "--to", folder], 130)
+    assert not (folder / "record.json").exists()
+
+
 # --- check and examples ---------------------------------------------------------
 
 
@@ -470,6 +482,18 @@ def test_that_a_stream_without_these_letters_gets_escapes_and_no_traceback(case_
     assert done.returncode == 1
     assert b"Traceback" not in done.stderr
     assert done.stderr.count(b"\n") == 1
+
+
+def test_that_a_reader_who_stops_reading_gets_no_traceback():
+    child = subprocess.Popen(
+        [sys.executable, "-m", "rescue_planner", "examples"],
+        stdout=subprocess.PIPE,
+        stderr=subprocess.PIPE,
+    )
+    child.stdout.close()
+    assert child.stderr.read() == b""
+    child.stderr.close()
+    assert child.wait() in (0, 130)
 
 
 def test_that_examples_are_listed_with_their_titles(capsys):
