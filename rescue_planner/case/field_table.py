@@ -1,6 +1,6 @@
-"""The table of every field of a case, in Markdown, from the types.
+"""The tables of every field and every measure of a case, in Markdown, from the definitions.
 
-`python -m rescue_planner.case.field_table docs/file-format.md` renews it between its two marks.
+`python -m rescue_planner.case.field_table docs/file-format.md` renews them between their marks.
 """
 
 from __future__ import annotations
@@ -17,9 +17,9 @@ from pydantic.fields import FieldInfo
 from rescue_planner.case.document import Case
 from rescue_planner.case.fields import alternatives, is_model, written
 from rescue_planner.case.inputs import input_of
+from rescue_planner.case.measures import MEASURES
 from rescue_planner.case.quantity import FrozenMap, Quantity
 
-BEGIN, END = "<!-- fields: begin -->", "<!-- fields: end -->"
 _HEADER = "| path | what | unit | allowed | left out |\n|---|---|---|---|---|"
 
 
@@ -29,19 +29,38 @@ def field_table() -> str:
     return "\n".join([_HEADER, *rows])
 
 
+def measure_table() -> str:
+    """Return the table of measures: key, name, unit in the file, what it is."""
+    head = "| key | name | unit in the file | what it is |\n|---|---|---|---|"
+    return "\n".join([head, *(f"| {' | '.join(row)} |" for row in _measure_rows())])
+
+
+def _measure_rows() -> Iterator[tuple[str, ...]]:
+    for measure in MEASURES:
+        each = f"`{measure.key}:<{measure.per} name>`" if measure.per else ""
+        whole = f"`{measure.key}`" if measure.whole_too or not measure.per else ""
+        key = " and ".join(word for word in (whole, each) if word)
+        unit = f"share: 1 is 100 {measure.unit}" if measure.kind == "share" else measure.unit
+        of = " …" if measure.per and not measure.whole_too else ""
+        yield key, f"{measure.name}{of}", unit, measure.meaning
+
+
 def renewed(page: str) -> str:
-    """Return `page` with the table between its marks made anew.
+    """Return `page` with the tables between its marks made anew.
 
     Raises
     ------
     ValueError
         When a mark is missing.
     """
-    before, _, rest = page.partition(BEGIN)
-    _, mark, after = rest.partition(END)
-    if not mark:
-        raise ValueError("the page lacks the marks of the table of fields")
-    return f"{before}{BEGIN}\n{field_table()}\n{END}{after}"
+    for name, table in (("measures", measure_table()), ("fields", field_table())):
+        begin, end = f"<!-- {name}: begin -->", f"<!-- {name}: end -->"
+        before, _, rest = page.partition(begin)
+        _, mark, after = rest.partition(end)
+        if not mark:
+            raise ValueError(f"the page lacks the marks of the table of {name}")
+        page = f"{before}{begin}\n{table}\n{end}{after}"
+    return page
 
 
 def _cell(text: str) -> str:

@@ -30,8 +30,16 @@ class Measure:
 
 
 MEASURES: tuple[Measure, ...] = (
-    Measure("adults", "Adults", "animals", "count", "Adults alive before breeding."),
-    Measure("young", "Young", "young at age 1", "count", "Animals of age 1 at the census."),
+    Measure(
+        "adults", "Adults", "animals", "count", "Adults alive at the census, just before breeding."
+    ),
+    Measure(
+        "young",
+        "Young",
+        "young at age 1",
+        "count",
+        "Animals of age 1 at the census: the young of the year before that lived.",
+    ),
     Measure(
         "gene_diversity",
         "Gene diversity",
@@ -60,7 +68,13 @@ MEASURES: tuple[Measure, ...] = (
         "number",
         "One minus gene diversity over the reference; below 0 where mixing lifts it above.",
     ),
-    Measure("kinship", "Mean kinship", "probability", "number", "Mean kinship of pairs."),
+    Measure(
+        "kinship",
+        "Mean kinship",
+        "probability",
+        "number",
+        "Chance that gene copies of two different animals are the same by descent.",
+    ),
     Measure(
         "relative_first_year_survival",
         "First-year survival against outbred",
@@ -90,7 +104,13 @@ MEASURES: tuple[Measure, ...] = (
         "share",
         "Variance that selection on the trait can use, against today’s.",
     ),
-    Measure("trait_mean", "Trait mean", "phenotypic SD", "number", "Mean of the trait."),
+    Measure(
+        "trait_mean",
+        "Trait mean",
+        "phenotypic SD",
+        "number",
+        "Mean of the trait in the population, 0 at the start.",
+    ),
     Measure(
         "trait_lag",
         "Trait lag",
@@ -105,22 +125,40 @@ MEASURES: tuple[Measure, ...] = (
         "number",
         "Fastest shift of the optimum that the population could follow without decline.",
     ),
-    Measure("yearly_growth", "Yearly growth", "times a year", "number", "Growth of the females."),
-    Measure("persists", "Persists", "% of runs", "share", "Runs not lost up to then."),
-    Measure("load", "Genetic load", "share of fitness", "number", "Load of harmful alleles."),
+    Measure(
+        "yearly_growth",
+        "Yearly growth",
+        "times a year",
+        "number",
+        "Numbers of one year over those of the year before, in the long run; 1 is steady.",
+    ),
+    Measure(
+        "persists",
+        "Persists",
+        "% of runs",
+        "share",
+        "Share of runs in which the population was never lost up to then.",
+    ),
+    Measure(
+        "load",
+        "Genetic load",
+        "share of fitness",
+        "number",
+        "Share of fitness that harmful alleles cost.",
+    ),
     Measure(
         "realised_effective_size",
         "Realised effective size",
         "animals per generation",
         "number",
-        "From the rise of mean kinship over a generation.",
+        "Size of an ideal population whose mean kinship would rise as fast over a generation.",
     ),
     Measure(
         "allele_frequency",
         "Frequency of",
         "share of gene copies",
         "number",
-        "Frequency of the named allele.",
+        "Share of gene copies at the locus that are the named allele.",
         per="locus",
         whole_too=False,
     ),
@@ -147,11 +185,17 @@ MEASURES: tuple[Measure, ...] = (
         "Adults of the donor",
         "adults",
         "count",
-        "Adults alive in the donor.",
+        "Adults alive in the donor, after what was taken.",
         per="donor",
         whole_too=False,
     ),
-    Measure("released", "Animals released", "animals so far", "count", "Animals released."),
+    Measure(
+        "released",
+        "Animals released",
+        "animals so far",
+        "count",
+        "Animals released up to then, whether they lived or not.",
+    ),
     Measure(
         "effective_migrants",
         "Newcomers that breed",
@@ -159,7 +203,13 @@ MEASURES: tuple[Measure, ...] = (
         "number",
         "Released animals and steady flow, weighted by survival and breeding.",
     ),
-    Measure("cost", "Cost", "currency so far", "money", "Money spent."),
+    Measure(
+        "cost",
+        "Cost",
+        "currency so far",
+        "money",
+        "Money spent up to then on releases and other actions.",
+    ),
 )
 
 _BY_KEY = {measure.key: measure for measure in MEASURES}

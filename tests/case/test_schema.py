@@ -8,8 +8,9 @@ import jsonschema
 import pytest
 
 from rescue_planner.case.document import Case
-from rescue_planner.case.field_table import field_table, renewed
+from rescue_planner.case.field_table import field_table, measure_table, renewed
 from rescue_planner.case.inputs import every_input
+from rescue_planner.case.measures import MEASURES
 from rescue_planner.case.problems import read_case
 from rescue_planner.case.schema import case_schema, schema_text
 from tests.case.sample import changed, full, problems_of, small
@@ -84,6 +85,10 @@ def test_that_the_table_has_every_input():
     lines = field_table()
     paths = [path for path, _ in every_input(Case) if "donors[*].life_cycle." not in path]
     assert [path for path in paths if f"| `{path}` |" not in lines] == []
+
+
+def test_that_the_page_lists_every_measure_by_its_key():
+    assert [one.key for one in MEASURES if f"`{one.key}" not in measure_table()] == []
 
 
 def test_that_a_page_without_marks_is_refused():
