@@ -7,6 +7,7 @@ from typing import Any
 
 from pydantic import BaseModel
 
+from rescue_planner.case import measures
 from rescue_planner.case.document import Case
 from rescue_planner.case.filled import lethal_equivalents
 from rescue_planner.case.population import Donor
@@ -83,6 +84,26 @@ def generations_in_words(case: Case) -> str:
     count = float(case.time.horizon_years.best) / float(case.time.generation_years.best)
     start, years = float(case.time.start_year.best), float(case.time.horizon_years.best)
     return f"{start:g} to {start + years:g}: {years:g} years are {count:.3g} generations."
+
+
+def target_in_words(case: Case, index: int) -> str:
+    """Return a target as a sentence in the unit its chart has: a share in per cent."""
+    if index >= len(case.targets):
+        return ""
+    target = case.targets[index]
+    times = 100.0 if measures.measure_of(target.measure).kind == "share" else 1.0
+    unit = measures.unit(target.measure, case.currency)
+    bounds = [
+        f"{side} {float(bound.best) * times:g} {unit}"
+        for side, bound in (("at least", target.at_least), ("at most", target.at_most))
+        if bound is not None
+    ]
+    if not bounds:
+        return ""
+    return (
+        f"Wanted: {measures.title(target.measure)} {' and '.join(bounds)} in "
+        f"{target.by_year.best:g}."
+    )
 
 
 def screen_in_words(donor: Donor) -> str:

@@ -109,7 +109,9 @@ class Explainer(QWidget):
 
     def _show_input(self, definition: Input) -> None:
         self._say(self._heading, definition.name)
-        self._say(self._unit, definition.unit)
+        document = self._desk.document
+        money = (document.case.currency if document.has_case else None) or "currency"
+        self._say(self._unit, definition.unit.replace("currency", money))
         self._say(self._meaning, definition.meaning)
         self._say(self._bounds, f"Bounds: {definition.bounds}." if definition.bounds else "")
         self._say(self._caution, f"△ {definition.caution}" if definition.caution else "")

@@ -19,11 +19,16 @@ KEYS = (
     ("Escape", "Take a typed number back"),
     ("Up, Down", "Step a number; Page Up and Page Down step it ten times as far"),
     ("Left, Right on a chart", "Read the values of all plans at a year"),
+    ("Up, Down on a chart", "Previous or next chart; the explainer tells what it shows"),
+    ("Ctrl+C on a chart or table", "Copy it as a table"),
+    ("F2, Delete, Alt+Up, Alt+Down in the plans", "Rename, remove, move a plan"),
+    ("Left, Right, +, −, Insert, Delete on the calendar", "Move, repeat, add, remove a release"),
     ("Ctrl+Z, Ctrl+Y", "Undo, redo"),
     ("Ctrl+N, Ctrl+O, Ctrl+S", "New case, open, save"),
     ("Ctrl+Shift+S, Ctrl+E", "Save as, export"),
     ("Ctrl+R", "Remarks"),
     ("Ctrl++, Ctrl+−", "Larger or smaller text"),
+    ("Ctrl+W, Ctrl+Q", "Close the case, quit"),
     ("F9", "Hide or show the explainer"),
     ("Alt and a letter", "A menu"),
 )
@@ -50,11 +55,12 @@ def keyboard_dialog(parent: QWidget) -> QDialog:
     grid = QGridLayout(inner)
     grid.setHorizontalSpacing(theme.UNIT * 3)
     for row, (keys, what) in enumerate(KEYS):
-        grid.addWidget(text(keys, "section", wrap=False), row, 0)
+        grid.addWidget(text(keys, "section"), row, 0)
         grid.addWidget(text(what), row, 1)
+    grid.setColumnStretch(0, 1)
     grid.setColumnStretch(1, 1)
     dialog = _dialog(parent, "Keyboard", inner)
-    dialog.resize(620, 560)
+    dialog.resize(760, 620)
     return dialog
 
 

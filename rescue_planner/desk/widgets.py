@@ -144,8 +144,10 @@ def scrolled(inner: QWidget, *, reachable: bool = False) -> QScrollArea:
     area = QScrollArea()
     policy = Qt.FocusPolicy.StrongFocus if reachable else Qt.FocusPolicy.NoFocus
     area.setFocusPolicy(policy)
+    area.setObjectName("reading" if reachable else "")
     area.setWidgetResizable(True)
     area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
-    area.setFrameShape(QFrame.Shape.NoFrame)
+    if not reachable:  # the other one has the ring of the focus as its frame
+        area.setFrameShape(QFrame.Shape.NoFrame)
     area.setWidget(inner)
     return area

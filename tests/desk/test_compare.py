@@ -289,7 +289,7 @@ def test_that_targets_are_checked_for_every_plan(page, desk):
 
 
 def test_that_the_decision_is_shown_under_the_question(page, desk):
-    assert page.question.text() == "What does each plan buy, and what does it cost?"
+    assert page.question.text() == "What does each plan buy and cost?"
     assert not page.decision.isVisibleTo(page)
     desk.document.try_edit(
         lambda case: set_value(case, "decision.question", "Bring in rails in 2027?")

@@ -9,6 +9,7 @@ from rescue_planner.desk.evidence import (
     inbreeding_cost_in_words,
     ratio_in_words,
     screen_in_words,
+    target_in_words,
 )
 
 
@@ -71,3 +72,12 @@ def test_that_a_clean_screen_is_still_no_proof(small) -> None:
         },
     ).case
     assert screen_in_words(clean.donors[0]).endswith("this is a screen, not a proof.")
+
+
+def test_that_a_target_typed_as_a_share_is_told_in_the_per_cent_of_its_chart(small) -> None:
+    assert target_in_words(small, 0) == (
+        "Wanted: Gene diversity kept at least 90 % of today’s in 2067."
+    )
+    both = set_value(small, "targets[0].at_most", 1.2).case
+    assert "at least 90 % of today’s and at most 120 % of today’s" in target_in_words(both, 0)
+    assert target_in_words(small, 1) == ""

@@ -8,7 +8,7 @@ from rescue_planner.case import measures
 from rescue_planner.case.document import Case
 from rescue_planner.case.edits import Edit, add_target, remove_target
 from rescue_planner.desk.case_page.section import Section, SectionPlan
-from rescue_planner.desk.evidence import generations_in_words
+from rescue_planner.desk.evidence import generations_in_words, target_in_words
 
 
 def _decision(section: Section, _case: Case) -> None:
@@ -49,6 +49,7 @@ def _targets(section: Section, case: Case) -> None:
         section.number(f"targets[{i}].at_least", unit=unit)
         section.number(f"targets[{i}].at_most", unit=unit)
         section.number(f"targets[{i}].by_year", "Checked in")
+        section.line(partial(target_in_words, index=i))
         section.text(f"targets[{i}].owner", "Who wants it")
         section.text(f"targets[{i}].reason", "Reason", lines=2)
     section.buttons(("Add a target", _new_target))

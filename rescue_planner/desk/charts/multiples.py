@@ -14,6 +14,7 @@ from PySide6.QtGui import (
     QMouseEvent,
     QPainter,
     QPen,
+    QPixmapCache,
     QResizeEvent,
 )
 from PySide6.QtWidgets import QFrame, QGraphicsView, QMenu, QScrollArea, QSizePolicy, QWidget
@@ -26,6 +27,8 @@ from rescue_planner.projection.reading import letter, time_ticks, year_text
 from rescue_planner.projection.value_table import course_table
 
 FRAME_MS = 16
+PIXELS_KIB = 96 * 1024
+WORDS_MS = 120  # a burst of edits is told in words once, after it
 PLOT_SHARE = 0.75  # of a panel's width is the plot's, about
 EDGE = 0.012  # of the time span, left and right of it, so that markers are whole
 
@@ -51,9 +54,15 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         self._timer.setSingleShot(True)
         self._timer.setInterval(FRAME_MS)
         self._timer.timeout.connect(self.flush)
+        self._words = QTimer(self)
+        self._words.setSingleShot(True)
+        self._words.setInterval(WORDS_MS)
+        self._words.timeout.connect(self._describe)
         self._set_up()
 
     def _set_up(self) -> None:
+        # Qt's own limit of 10 MB would drop the kept pixels of a full board at every paint
+        QPixmapCache.setCacheLimit(max(QPixmapCache.cacheLimit(), PIXELS_KIB))
         self.setFrameShape(QFrame.Shape.NoFrame)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.setMouseTracking(True)
@@ -80,6 +89,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
     def show_message(self, words: str) -> None:
         """Draw nothing but a sentence."""
         self._timer.stop()
+        self._words.stop()
         self._wanted = self.shown = None
         self._message = words
         self._set_count(0)
@@ -109,7 +119,7 @@ class SmallMultiples(pg.GraphicsLayoutWidget):
         self._place()
         self._show_time()
         self.show_read_out()
-        self._describe()
+        self._words.start()
         self.drawn.emit()
 
     def _fan_name(self, spec: PanelSpec) -> str:

@@ -9,7 +9,8 @@ from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QBrush, QColor, QFontMetricsF, QPainter, QPolygonF
 from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
 
-from rescue_planner.desk.charts.gutters import GAP, Gutter
+from rescue_planner.desk.charts.gutters import GAP, Gutter, plotted_range
+from rescue_planner.projection.picture import Picture
 from rescue_planner.projection.placing import Box, quietest
 from rescue_planner.projection.reading import TargetMark, year_text
 
@@ -47,6 +48,8 @@ class Overlay(Gutter):
         self.read_out: float | None = None
         self.t = 0
         self._busy: list[tuple[float, float]] = []
+        self._points: list[tuple[float, float]] = []
+        self._points_for: tuple[Picture, float, float, tuple[float, float]] | None = None
 
     def show_read_out(self, year: float | None, t: int) -> None:
         """Draw the hairline at `year`, or none."""
@@ -118,16 +121,26 @@ class Overlay(Gutter):
         self._words(painter, QPointF(left, top), words, colour)
 
     def _line_points(self) -> list[tuple[float, float]]:
-        """Return points along the lines, about as dense as letters are wide."""
+        """Return points along the lines, about as dense as letters are wide.
+
+        They are needed at every paint and change only with the picture, the room and the years.
+        """
         assert self.picture is not None
+        width, height = float(self.size().width()), float(self.size().height())
+        made_for = (self.picture, width, height, self.span)
+        if self._points_for == made_for:
+            return list(self._points)
+        low, high = plotted_range(self.picture)
         points: list[tuple[float, float]] = []
         for line in self.picture.lines:
-            xs = np.array([self.x_of(float(year)) for year in line.curve.years])
-            ys = np.array([self.y_of(float(value)) for value in line.curve.values])
-            if xs.size:
-                at = np.arange(xs[0], xs[-1] + 1, 5.0)
-                points += list(zip(at.tolist(), np.interp(at, xs, ys).tolist(), strict=True))
-        return points
+            if not line.curve.years.size:
+                continue
+            xs = width * (line.curve.years - self.span[0]) / (self.span[1] - self.span[0])
+            ys = height * (1.0 - (line.curve.values - low) / (high - low))
+            at = np.arange(xs[0], xs[-1] + 1, 5.0)
+            points += zip(at.tolist(), np.interp(at, xs, ys).tolist(), strict=True)
+        self._points_for, self._points = made_for, points
+        return list(points)
 
     def _words(self, painter: QPainter, at: QPointF, words: str, colour: str = "") -> None:
         """Write words on a ground that dims the lines below them."""

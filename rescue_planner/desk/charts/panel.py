@@ -8,6 +8,7 @@ import numpy as np
 import pyqtgraph as pg
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QColor
+from PySide6.QtWidgets import QGraphicsItem
 
 from rescue_planner.desk.charts.gutters import (
     EndLetters,
@@ -27,6 +28,14 @@ MARKER_PIXELS = 6
 OUTER, INNER = 46, 80  # opacity of the bands, of 255
 
 
+_BANDS = ("years", "q05", "q25", "q75", "q95")
+
+
+def keep_painted(item: QGraphicsItem) -> None:
+    """Let Qt keep the painted pixels of an item until it changes: most plans do not."""
+    item.setCacheMode(QGraphicsItem.CacheMode.DeviceCoordinateCache)
+
+
 class PlanItems:
     """What is drawn for one plan; touched only where its line or look changed."""
 
@@ -37,6 +46,7 @@ class PlanItems:
         self._drawn: tuple[Line, Look, float] | None = None
         self.times_drawn = 0
         for item in (self.curve, self.markers):
+            keep_painted(item)
             view.addItem(item, ignoreBounds=True)
 
     def show_line(self, line: Line, look: Look, weight: float) -> None:
@@ -76,18 +86,30 @@ def _same(one: tuple[Line, Look, float], other: tuple[Line, Look, float]) -> boo
     )
 
 
+def _same_fan(one: tuple[Fan, QColor], other: tuple[Fan, QColor]) -> bool:
+    (a, colour), (b, another) = one, other
+    return colour == another and all(
+        np.array_equal(getattr(a, name), getattr(b, name)) for name in _BANDS
+    )
+
+
 class FanItems:
     """The two bands of one plan."""
 
     def __init__(self, view: pg.ViewBox) -> None:
         self.outer = pg.PlotCurveItem(antialias=True, fillLevel="enclosed", pen=None)
         self.inner = pg.PlotCurveItem(antialias=True, fillLevel="enclosed", pen=None)
+        self._drawn: tuple[Fan, QColor] | None = None
         for z, item in enumerate((self.outer, self.inner)):
             item.setZValue(z)
+            keep_painted(item)
             view.addItem(item, ignoreBounds=True)
 
     def show_fan(self, fan: Fan | None, colour: QColor) -> None:
-        """Draw the bands, or none."""
+        """Draw the bands, or none, unless they stand there already."""
+        if fan is not None and self._drawn is not None and _same_fan(self._drawn, (fan, colour)):
+            return
+        self._drawn = None if fan is None else (fan, colour)
         for item, alpha in ((self.outer, OUTER), (self.inner, INNER)):
             item.setVisible(fan is not None)
             if fan is None:

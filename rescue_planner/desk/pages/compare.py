@@ -1,4 +1,4 @@
-"""The Compare page: what does each plan buy, and what does it cost."""
+"""The Compare page: what does each plan buy and cost."""
 
 from __future__ import annotations
 
@@ -27,7 +27,7 @@ from rescue_planner.projection.reading import depths_shown
 from rescue_planner.projection.results import Comparison
 from rescue_planner.projection.table_words import depth_words, event_sentences
 
-QUESTION = "What does each plan buy, and what does it cost?"
+QUESTION = "What does each plan buy and cost?"
 TRUST = (
     "Compare plans with one another. Do not read a single line as a forecast of what will happen."
 )

@@ -151,8 +151,9 @@ def test_that_a_chosen_panel_is_told_and_copied(qtbot, draw, comparison):
     assert float(lines[-1].split("\t")[3]) == pytest.approx(kept[-1], abs=0.05)
 
 
-def test_that_charts_are_told_in_words(draw):
+def test_that_charts_are_told_in_words(qtbot, draw):
     charts = draw()
+    qtbot.waitUntil(lambda: bool(charts.accessibleDescription()))
     words = charts.accessibleDescription()
     assert charts.accessibleName() == "Charts"
     for panel in charts.panels:
