@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 from rescue_planner.case.document import Case
@@ -48,7 +48,12 @@ class Picture:
     decimals: int
     widest: str
     empty: str
-    description: str
+    described: Callable[[], str]
+
+    @property
+    def description(self) -> str:
+        """The chart in words; made when it is asked for, not at every redraw."""
+        return self.empty or self.described()
 
     def text_at(self, line: Line, t: int) -> str:
         """Return what the read-out says of a line at t."""
@@ -108,7 +113,7 @@ def picture(
         decimals=decimals,
         widest=_widest(comparison, key, decimals),
         empty=empty,
-        description=empty or _described(comparison, key, plans, targets),
+        described=lambda: _described(comparison, key, plans, targets),
     )
 
 

@@ -57,11 +57,12 @@ def places(key: str, values: Iterable[float], error: float | None = None) -> int
         Half the width of the Monte Carlo interval, as shown: no digit below a tenth of it.
     """
     base, kind = split(key)[0], measure_of(key).kind
-    whole = [abs(value) for value in values if math.isfinite(value)]
     count = _OWN_PLACES.get(base, _PLACES[kind])
     if kind == "count":
-        entire = all(value == round(value) for value in whole)
-        count = 0 if entire or max(whole, default=0.0) >= 100 else 1
+        given = np.array([*values], dtype=np.float64)
+        whole = np.abs(given[np.isfinite(given)])
+        entire = bool(np.all(whole == np.round(whole)))
+        count = 0 if entire or float(whole.max(initial=0.0)) >= 100 else 1
     if error is not None and error > 0:
         count = min(count, max(0, 1 - math.floor(math.log10(error))))
     return count
@@ -274,16 +275,16 @@ def column_places(
     comparison: Comparison, key: str, plans: Sequence[str], at: Sequence[int] | None = None
 ) -> int:
     """Return the decimals that all plans' values of a measure share."""
-    values: list[float] = []
+    values: list[FloatArray] = [np.zeros(0)]
     error = 0.0
     for plan in comparison.plans if len(plans) < 2 else plans:
         line = curve(comparison, plan, key)
         if line is None:
             continue
-        chosen = range(line.values.size) if at is None else [t for t in at if t < line.values.size]
-        values.extend(float(line.values[t]) for t in chosen)
+        chosen = slice(None) if at is None else [t for t in at if t < line.values.size]
+        values.append(line.values[chosen])
         error = max(error, _error(comparison.best(plan, key)) * scale(key))
-    return places(key, values, error or None)
+    return places(key, np.concatenate(values), error or None)
 
 
 def _error(series: Series | None) -> float:
