@@ -208,6 +208,22 @@ def test_that_a_donor_without_a_frequency_is_refused(case):
         edits.add_donor(case, "High Fen", 0.6, 0.1)
 
 
+def test_that_answers_follow_a_donor_that_is_renamed():
+    raw = full()
+    remarks = [
+        "donor-below-floor plans[2]:Upper Fen",
+        "fst-assumed donors[1].fst_to_donors.Upper Fen",
+    ]
+    others = ["disease-not-assessed", "size-high recipient.effective_size"]
+    raw["answers"] = [{"remark": one, "reason": "agreed"} for one in [*remarks, *others]]
+    renamed = edits.rename_donor(read_case(raw), "Upper Fen", "St. John").case
+    assert [answer.remark for answer in renamed.answers] == [
+        "donor-below-floor plans[2]:St. John",
+        'fst-assumed donors[1].fst_to_donors["St. John"]',
+        *others,
+    ]
+
+
 def test_that_a_donor_in_use_stays_and_every_use_is_named(case):
     with pytest.raises(InvalidCase) as refused:
         edits.remove_donor(case, "Upper Fen")

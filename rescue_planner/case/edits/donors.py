@@ -102,6 +102,7 @@ def rename_donor(case: Case, name: str, new_name: str) -> Edit:
         raw = put(raw, path[:-1], renamed)
     raw = _renamed_measures(raw, "donor", name, new_name)
     raw = repathed(raw, lambda steps: _renamed_entry(steps, name, new_name))
+    raw = _renamed_answers(raw, name, new_name)
     return done(f"Rename donor “{name}” to “{new_name}”", raw)
 
 
@@ -224,6 +225,22 @@ def _is_entry(steps: Path, name: str) -> bool:
 
 def _renamed_entry(steps: Path, name: str, new_name: str) -> Path:
     return (*steps[:-1], new_name) if _is_entry(steps, name) else steps
+
+
+def _renamed_answers(raw: Raw, name: str, new_name: str) -> Raw:
+    """Return `raw` with answers still answering remarks that name the donor."""
+    for place, answer in parts(raw, "answers"):
+        key, _, path = answer["remark"].partition(" ")
+        place_of, _, also = path.partition(":")
+        if also == name:
+            told = f"{place_of}:{new_name}"
+        else:
+            try:
+                told = format_path(_renamed_entry(parse_path(path), name, new_name))
+            except ValueError:  # about the whole case
+                continue
+        raw = put(raw, ("answers", place, "remark"), f"{key} {told}".strip())
+    return raw
 
 
 def _what_if_paths(raw: Raw) -> Iterator[tuple[Path, Path]]:
