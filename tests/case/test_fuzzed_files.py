@@ -143,7 +143,7 @@ def test_that_500_damaged_files_open_or_are_refused_in_words(
 def test_that_a_case_of_odd_values_everywhere_is_refused_in_words() -> None:
     chance = random.Random(SEED)
     for place in _places(full()):
-        for odd in chance.sample(ODD, 16):
+        for odd in chance.sample(ODD, 10):
             raw: Any = full()
             holder = raw
             for step in place[:-1]:
@@ -159,3 +159,10 @@ def _refusals(raw: Any) -> list[str]:
     except InvalidCase as error:
         return [problem.text for problem in error.problems]
     return []
+
+
+@pytest.mark.parametrize("length", [1e-320, 1e-300, 1e308])
+def test_that_a_generation_too_short_or_too_long_is_a_problem_in_words(length: float) -> None:
+    raw: Any = full()
+    raw["time"]["generation_years"] = length
+    assert any("generation" in text.lower() for text in _refusals(raw))
