@@ -18,6 +18,7 @@ def _plain_path():
     chain_path.use_plain()
 
 
+@pytest.mark.slow
 def test_that_a_child_compiles_and_the_compiled_path_takes_over(qtbot, tmp_path, monkeypatch):
     monkeypatch.setenv(places.CACHE_VARIABLE, str(tmp_path))
     loader = KernelLoader()
