@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rescue_planner.case.filled import TOLERANCE_STEPS
-from rescue_planner.case.measures import title
+from rescue_planner.case.measures import measure_of, title
 from rescue_planner.case.plans import Rule
 from rescue_planner.projection.results import RuleEvent
 from rescue_planner.projection.setup import RuleSetup, Setup
@@ -88,9 +88,15 @@ def _note(
         return
     rule, year = entry.rule, setup.start_year + t * setup.generation_years
     bounds = [
-        f"above {rule.above.best:g}" if rule.above is not None else "",
-        f"below {rule.below.best:g}" if rule.below is not None else "",
+        f"above {_text(rule.when, rule.above.best)}" if rule.above is not None else "",
+        f"below {_text(rule.when, rule.below.best)}" if rule.below is not None else "",
     ]
     bound = " and ".join(word for word in bounds if word)
-    sentence = f"{year:g}: {title(rule.when)} is {value:.4g}, {bound}: {what}."
+    read_as = _text(rule.when, float(value))
+    sentence = f"{year:g}: {title(rule.when)} is {read_as}, {bound}: {what}."
     book.events.append(RuleEvent(entry.plan, rule.name, t, year, sentence))
+
+
+def _text(measure: str, value: float) -> str:
+    """Return a value as people read it: shares in per cent."""
+    return f"{100 * value:.4g} %" if measure_of(measure).kind == "share" else f"{value:.4g}"
