@@ -4,9 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Collection, Iterator
 from dataclasses import dataclass
-from typing import Literal
+from typing import TYPE_CHECKING, Literal
 
-from rescue_planner.case.document import Case
+if TYPE_CHECKING:
+    from rescue_planner.case.document import Case
+
 
 Kind = Literal["share", "number", "count", "money"]
 Per = Literal["", "donor", "locus"]

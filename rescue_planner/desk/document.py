@@ -10,10 +10,10 @@ from typing import TYPE_CHECKING, Any
 from PySide6.QtCore import QObject, Signal
 from PySide6.QtGui import QUndoCommand, QUndoStack
 
-from rescue_planner.case.document import Case
 from rescue_planner.case.faults import InvalidCase, Problem
 
 if TYPE_CHECKING:
+    from rescue_planner.case.document import Case
     from rescue_planner.case.edits import Edit
 
 

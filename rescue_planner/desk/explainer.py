@@ -9,14 +9,11 @@ from PySide6.QtCore import QSignalBlocker, Qt
 from PySide6.QtWidgets import QComboBox, QGridLayout, QLabel, QLineEdit, QVBoxLayout, QWidget
 
 from rescue_planner.case import measures
-from rescue_planner.case.fields import definition_at, model_at
-from rescue_planner.case.inputs import Input
 from rescue_planner.case.paths import parse_path, steps_of
-from rescue_planner.case.quantity import Quantity
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.fields import sentence_of
-from rescue_planner.desk.numbers import read_number, value_at, written
+from rescue_planner.desk.numbers import is_quantity, read_number, value_at, written
 from rescue_planner.desk.widgets import rule, scrolled, text
 
 ORIGINS = ((None, "not stated"), ("measured", "measured"), ("borrowed", "borrowed"),
@@ -25,6 +22,8 @@ WIDTH = 264
 if TYPE_CHECKING:
     from rescue_planner.case.document import Case
     from rescue_planner.case.edits import Edit
+    from rescue_planner.case.inputs import Input
+    from rescue_planner.case.quantity import Quantity
 
 OPENING = "Put the cursor into a number, and its meaning, unit, bounds and source are told here."
 
@@ -96,6 +95,8 @@ class Explainer(QWidget):
 
     def show_path(self, path: str) -> None:
         """Explain an input by its path, or a measure by its key."""
+        from rescue_planner.case.fields import definition_at
+
         try:
             definition = definition_at(parse_path(path))
         except ValueError:
@@ -140,6 +141,8 @@ class Explainer(QWidget):
 
     def _show_words(self, path: str) -> None:
         """Explain a field that is no number by what the part of the case it stands in is."""
+        from rescue_planner.case.fields import model_at
+
         steps = steps_of(path)
         model = model_at(steps[:-1])
         words = str(steps[-1]).replace("_", " ").capitalize()
@@ -160,7 +163,7 @@ class Explainer(QWidget):
                 held = value_at(self._desk.document.case, self._path)
             except ValueError:
                 held = None
-        self._origin.show_value(self._path, held if isinstance(held, Quantity) else None)
+        self._origin.show_value(self._path, held if is_quantity(held) else None)
 
 
 class _OriginForm(QWidget):

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QEvent
 from PySide6.QtGui import QKeyEvent, QKeySequence, QResizeEvent
@@ -14,13 +14,14 @@ from PySide6.QtWidgets import (
 )
 
 from rescue_planner.case.faults import Problem
-from rescue_planner.case.fields import definition_at
-from rescue_planner.case.inputs import Input
 from rescue_planner.case.paths import parse_path
-from rescue_planner.case.quantity import Quantity
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.numbers import value_at
+
+if TYPE_CHECKING:
+    from rescue_planner.case.inputs import Input
+    from rescue_planner.case.quantity import Quantity
 
 LABEL, NARROW = 27, 70  # widths in letters: of a label, and below which it stands above
 WIDEST = 16_777_215
@@ -33,6 +34,8 @@ def sentence_of(problems: Sequence[Problem]) -> str:
 
 def definition_of(path: str) -> Input | None:
     """Return the definition of the input at a written path, if it is one."""
+    from rescue_planner.case.fields import definition_at
+
     return definition_at(parse_path(path))
 
 

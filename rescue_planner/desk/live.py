@@ -6,13 +6,12 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, QTimer, Signal
 
-from rescue_planner.case.document import Case
-from rescue_planner.case.filled import best, steps
 from rescue_planner.desk.document import CaseDocument
 from rescue_planner.desk.jobs import JobRunner
 from rescue_planner.projection.jobs import JobControl
 
 if TYPE_CHECKING:
+    from rescue_planner.case.document import Case
     from rescue_planner.projection.results import Comparison
 
 COALESCE_MS = 16
@@ -27,11 +26,15 @@ EXPECTED_NAME = "Average course"
 
 def expected_cost(case: Case) -> float:
     """Return how many steps the average courses take; all plans are walked together."""
+    from rescue_planner.case.filled import steps
+
     return float(steps(float(case.time.horizon_years.best), float(case.time.generation_years.best)))
 
 
 def exact_cost(case: Case) -> float:
     """Return (2Ne)^1.5 summed over loci, plans and steps: what the chains cost, up to a factor."""
+    from rescue_planner.case.filled import best, steps
+
     count = steps(float(case.time.horizon_years.best), float(case.time.generation_years.best))
     total = 0.0
     for plan in case.plans:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 from PySide6.QtCore import QEvent, QSignalBlocker, Qt, Signal
 from PySide6.QtGui import QFocusEvent, QKeyEvent, QWheelEvent
 from PySide6.QtWidgets import (
@@ -13,12 +15,14 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
-from rescue_planner.case.quantity import Quantity
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.field_base import Bound, FieldRow, asks_to_undo
-from rescue_planner.desk.numbers import range_in_words, read_number, stepped, written
+from rescue_planner.desk.numbers import is_quantity, range_in_words, read_number, stepped, written
 from rescue_planner.desk.widgets import Link
+
+if TYPE_CHECKING:
+    from rescue_planner.case.quantity import Quantity
 
 CHOSEN_BY_KEY = (
     Qt.FocusReason.TabFocusReason,
@@ -158,7 +162,7 @@ class NumberField(Bound):
     def value(self) -> float | None:
         """Return the number the case holds, or nothing."""
         held = self.held()
-        return held.best if isinstance(held, Quantity) else None
+        return held.best if is_quantity(held) else None
 
     def refresh(self) -> None:
         """Show what the case holds, unless half-typed text or a wrong one stands here."""
@@ -210,7 +214,7 @@ class NumberField(Bound):
             self._say_wrong(str(wrong))
             return
         held = self.held()
-        if isinstance(held, Quantity) and held.best == typed:
+        if is_quantity(held) and held.best == typed:
             self.revert()
             return
         self._accept(typed)
@@ -218,7 +222,7 @@ class NumberField(Bound):
     def _outside(self, typed: float | int | None) -> bool:
         """Say so where a number lies outside the range that is held with it, and offer a way."""
         held = self.held()
-        spread = held.spread if isinstance(held, Quantity) else None
+        spread = held.spread if is_quantity(held) else None
         if typed is None or spread is None or spread[0] <= typed <= spread[1]:
             return False
         self._wanted = typed
@@ -235,15 +239,17 @@ class NumberField(Bound):
 
     def _widen(self) -> None:
         held = self.held()
-        if not isinstance(held, Quantity) or self._wanted is None or held.spread is None:
+        if not is_quantity(held) or self._wanted is None or held.spread is None:
             return
         ends = (*held.spread, self._wanted)
         changed = {"best": self._wanted, "low": min(ends), "high": max(ends)}
+        from rescue_planner.case.quantity import Quantity
+
         whole = Quantity(**{**held.model_dump(exclude_none=True), **changed})
         self._accept(whole)
 
     def _accept(self, typed: float | int | Quantity | None) -> None:
-        if not isinstance(typed, Quantity) and self._outside(typed):
+        if not is_quantity(typed) and self._outside(typed):
             self.edit.setModified(True)
             return
         self.edit.setModified(False)  # so that the case's own form of the number is shown
@@ -265,7 +271,7 @@ class NumberField(Bound):
         """Move the number by sensible steps and put it into the case."""
         self.commit()
         held = self.held()
-        if isinstance(held, Quantity) and not self.has_problem:
+        if is_quantity(held) and not self.has_problem:
             moved = stepped(held.best, by, self.definition)
             self._put(written(moved))
             self._accept(moved)

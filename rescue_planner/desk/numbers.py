@@ -5,12 +5,16 @@ from __future__ import annotations
 import math
 import re
 from decimal import Decimal
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
-from rescue_planner.case.document import Case
-from rescue_planner.case.inputs import Input
 from rescue_planner.case.paths import Path, steps_of
-from rescue_planner.case.quantity import FrozenMap, Quantity
+
+if TYPE_CHECKING:
+    from typing_extensions import TypeIs
+
+    from rescue_planner.case.document import Case
+    from rescue_planner.case.inputs import Input
+    from rescue_planner.case.quantity import Quantity
 
 _PLAIN = re.compile(r"[+-]?(\d+(\.\d*)?|\.\d+)([eE][+-]?\d+)?")
 
@@ -89,8 +93,17 @@ def _bound(definition: Input | None, *names: str) -> float | None:
     return None
 
 
+def is_quantity(held: object) -> TypeIs[Quantity]:
+    """Return whether a value of the case is a number with its range and origin."""
+    from rescue_planner.case.quantity import Quantity
+
+    return isinstance(held, Quantity)
+
+
 def value_at(case: Case, path: str | Path) -> Any:  # noqa: ANN401 - whatever stands there
     """Return what stands at `path` of `case`, defaults included, or None where nothing does."""
+    from rescue_planner.case.quantity import FrozenMap
+
     held: Any = case
     for step in steps_of(path):
         if isinstance(step, int) and isinstance(held, tuple):

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 from PySide6.QtCore import QEvent, QPointF, QRect, QRectF, QSignalBlocker, QSize, Qt, QTimer
 from PySide6.QtGui import QColor, QPainter, QPaintEvent, QPen, QResizeEvent
 from PySide6.QtWidgets import (
@@ -13,13 +15,15 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
-from rescue_planner.case.plans import Plan
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.flow import FlowLayout
 from rescue_planner.desk.plan_mark import paint_sample
 from rescue_planner.desk.widgets import rule, text
 from rescue_planner.projection.marks import PlanMark, mark
+
+if TYPE_CHECKING:
+    from rescue_planner.case.plans import Plan
 
 SAMPLE = 36
 NAME_WIDTHS = (48, 36, 28, 22, 17, 13, 10, 7, 4, 0)  # in letters; the widest that fits is taken

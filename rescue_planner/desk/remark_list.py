@@ -16,7 +16,6 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
-from rescue_planner.case.document import Case
 from rescue_planner.desk import theme
 from rescue_planner.desk.context import Desk
 from rescue_planner.desk.fields import sentence_of
@@ -24,6 +23,7 @@ from rescue_planner.desk.jobs import JobRunner
 from rescue_planner.desk.widgets import button, rule, scrolled, text
 
 if TYPE_CHECKING:
+    from rescue_planner.case.document import Case
     from rescue_planner.case.remarks import Remark
 
 WAIT_MS = 400
