@@ -18,6 +18,7 @@ from rescue_planner.annex.sheet import WIDTHS_MM
 from rescue_planner.annex.writing import ExportError, made, put
 from rescue_planner.case.document import Case
 from rescue_planner.case.remarks import Remark
+from rescue_planner.projection.picture import no_input
 from rescue_planner.projection.results import Comparison
 from rescue_planner.projection.table import comparison_csv
 
@@ -70,8 +71,8 @@ def write_run(  # noqa: PLR0913 - one call for the desk and the command line
     folder : path
         Made where it is missing. Files of the same names are replaced, others stay.
     measures : keys, optional
-        Which measures get a figure and a place in the tables; all where left out. The CSV files
-        always hold all.
+        Which measures get a figure, a place in the tables and rows in projection.csv; all where
+        left out. A measure that shows nothing entered gets no figure and no table, but words.
     remarks : sequence of Remark
         Shown with their answers.
     what_if : name, optional
@@ -93,12 +94,13 @@ def write_run(  # noqa: PLR0913 - one call for the desk and the command line
     """
     began = datetime.now(UTC) if started is None else started
     shown = [key for key in comparison.measures if measures is None or key in measures]
-    found = pictures(case, comparison, shown)
+    pictured = [key for key in shown if not no_input(case, key)]
+    found = pictures(case, comparison, pictured)
     total = _OTHER_FILES + 3 * len(WIDTHS_MM) * len(found)
     step = checkpoint if checkpoint is not None else lambda done, total: None
     out = _Folder(Path(folder))
     step(0, total)
-    out.put("projection.csv", comparison_csv(comparison))
+    out.put("projection.csv", comparison_csv(comparison, shown))
     out.put("target_checks.csv", target_checks_csv(target_checks(case, comparison)))
     made(out.folder / "figures")
     out.put("figures/captions.md", captions_text(found))
@@ -114,7 +116,8 @@ def write_run(  # noqa: PLR0913 - one call for the desk and the command line
         Content(
             case=case,
             comparison=comparison,
-            measures=tuple(shown),
+            measures=tuple(pictured),
+            nothing_entered=tuple(dict.fromkeys(filter(None, (no_input(case, k) for k in shown)))),
             figures=tuple(figures),
             remarks=tuple(remarks),
             occasion=Occasion(began, datetime.now(UTC)),

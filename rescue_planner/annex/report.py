@@ -36,6 +36,7 @@ class Content:
     case: Case
     comparison: Comparison
     measures: tuple[str, ...]
+    nothing_entered: tuple[str, ...]
     figures: tuple[Illustration, ...]
     remarks: tuple[Remark, ...]
     occasion: Occasion
@@ -169,7 +170,9 @@ def _compared(content: Content) -> tuple[Section, ...]:
         if comparison.capped
         else []
     )
-    words = tuple(Text(one) for one in [*gone, *capped])
+    # what to do about it belongs on a screen, not in a report
+    missing = [words.partition(" Add ")[0] for words in content.nothing_entered]
+    words = tuple(Text(one) for one in [*gone, *capped, *missing])
     ranges = any(series.statistic == "q05" for series in comparison.series)
     note = "Brackets hold the 5 % to 95 % range where a depth gives one."
     notes = (Text(note, "note"),) if ranges else ()

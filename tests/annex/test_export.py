@@ -124,12 +124,26 @@ def test_that_the_same_run_gives_the_same_bytes(case, comparison, tmp_path, writ
     assert differ == []
 
 
-def test_that_measures_choose_the_figures_but_not_the_csv(case, comparison, tmp_path):
+def test_that_measures_choose_figures_and_rows_alike(case, comparison, tmp_path):
     done = write_run(case, comparison, tmp_path, measures=["inbreeding"])
     names = sorted(path.stem for path in (done.folder / "figures").glob("*.svg"))
     assert names == ["comparison_170mm", "comparison_85mm", "inbreeding_170mm", "inbreeding_85mm"]
     held = (done.folder / "projection.csv").read_bytes()
-    assert held == comparison_csv(comparison).encode()
+    assert held == comparison_csv(comparison, ["inbreeding"]).encode()
+    whole = comparison_csv(comparison).encode()
+    assert set(held.splitlines()) < set(whole.splitlines())
+
+
+def test_that_nothing_entered_is_said_and_not_drawn(case, comparison, tmp_path):
+    """Without an inbreeding cost survival is 100 % throughout: rows in the file, no figure."""
+    bare = case.model_copy(update={"inbreeding_cost": None})
+    keys = ["inbreeding", "relative_first_year_survival"]
+    done = write_run(bare, compare(bare), tmp_path, measures=keys)
+    names = {path.stem for path in (done.folder / "figures").glob("*_85mm.svg")}
+    assert names == {"comparison_85mm", "inbreeding_85mm"}
+    page = (done.folder / "annex.html").read_text("utf-8")
+    assert "No inbreeding cost entered" in page
+    assert "relative_first_year_survival" in (done.folder / "projection.csv").read_text("utf-8")
 
 
 def test_that_progress_runs_from_none_to_all_and_never_back(case, comparison, tmp_path):
