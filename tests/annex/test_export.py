@@ -13,6 +13,7 @@ from pathlib import Path
 import pytest
 
 from rescue_planner.annex.export import ExportError, write_run
+from rescue_planner.projection.compare import compare
 from rescue_planner.projection.table import comparison_csv
 
 
