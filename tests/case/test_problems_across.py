@@ -111,11 +111,6 @@ def test_that_somebody_must_breed(sex):
     assert f"no breeding {sex}" in problems_of(changed(small(), path, 0))[path]
 
 
-def test_that_following_the_adults_needs_a_life_cycle():
-    path = "recipient.effective_size_follows_adults"
-    assert "life cycle" in problems_of(changed(small(), path, True))[path]
-
-
 def test_that_ancestries_at_the_start_sum_to_1_at_most():
     shares = {"Upper Fen": 0.6, "St. Anne [pens]": 0.5}
     raw = changed(full(), "recipient.donor_ancestry_at_start", shares)
@@ -205,12 +200,6 @@ def test_that_a_donors_own_life_cycle_is_checked_too():
     assert "donors[1].life_cycle.last_age" in problems_of(
         changed(full(), "donors[1].life_cycle", cycle)
     )
-
-
-def test_that_a_life_cycle_like_the_recipients_needs_the_recipients():
-    raw = full()
-    del raw["life_cycle"]
-    assert list(problems_of(raw)) == ["donors[0].life_cycle"]
 
 
 # --- rules, targets, what-ifs --------------------

@@ -368,3 +368,13 @@ def test_that_a_what_if_that_finds_nothing_is_said_and_stops_nothing():
     (text,) = said(raw, "what-if-changes-nothing").values()
     assert "finds nothing" in text
     assert said(full(), "what-if-changes-nothing") == {}
+
+
+def test_that_what_only_a_life_cycle_gives_is_said_and_stops_nothing():
+    raw = put(small(), recipient__effective_size_follows_adults=True)
+    assert "it is held" in said(raw, "nothing-to-follow")["recipient.effective_size_follows_adults"]
+    assert said(raw, "size-held")
+    shared = full()
+    del shared["life_cycle"]
+    assert "which is not given" in said(shared, "no-cycle-to-share")["donors[0].life_cycle"]
+    assert said(full(), "nothing-to-follow") == said(full(), "no-cycle-to-share") == {}

@@ -16,9 +16,6 @@ def check_life(raw: Raw) -> Iterator[Problem]:
     yield from _one_cycle(raw.get("life_cycle"), "life_cycle")
     for place, donor in parts(raw, "donors"):
         yield from _one_cycle(donor.get("life_cycle"), f"donors[{place}].life_cycle")
-        if donor.get("life_cycle") == "same" and raw.get("life_cycle") is None:
-            text = "The donor’s life cycle is the same as the recipient’s, which is not given: "
-            yield Problem(f"donors[{place}].life_cycle", text + "add one, or remove this.")
 
 
 def _one_cycle(cycle: object, where: str) -> Iterator[Problem]:

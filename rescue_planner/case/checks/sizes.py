@@ -17,11 +17,16 @@ def check_sizes(raw: Raw) -> Iterator[Problem]:
     adults = value_at(raw, "recipient", "adults")
     size = value_at(raw, "recipient", "effective_size")
     sizes = [("recipient.effective_size", size)]
+    # without a life cycle there are no adults to follow, so the size is held
+    follows = (
+        at(raw, "recipient", "effective_size_follows_adults") is True
+        and at(raw, "life_cycle") is not None
+    )
     for place, plan in parts(raw, "plans"):
         own = value_at(plan, "effective_size", otherwise=size)
         if at(plan, "effective_size") is not None:
             sizes.append((f"plans[{place}].effective_size", own))
-        if own is not None and at(raw, "recipient", "effective_size_follows_adults") is not True:
+        if own is not None and not follows:
             yield from _shrunk(raw, plan, own, f"plans[{place}].other_actions")
     for path, one in sizes:
         if one is not None and adults is not None and one > adults > 0:
@@ -33,10 +38,6 @@ def check_sizes(raw: Raw) -> Iterator[Problem]:
         if value_at(raw, "recipient", f"breeding_{sex}") == 0:
             text = f"There are no breeding {sex}: without them there is nothing to project; "
             yield Problem(f"recipient.breeding_{sex}", text + "give their number.")
-    follows = at(raw, "recipient", "effective_size_follows_adults") is True
-    if follows and at(raw, "life_cycle") is None:
-        text = "The effective size can follow the adults only with a life cycle: add one or say no."
-        yield Problem("recipient.effective_size_follows_adults", text)
 
 
 def check_ancestry(raw: Raw) -> Iterator[Problem]:

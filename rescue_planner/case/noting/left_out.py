@@ -86,7 +86,7 @@ def _recipient(case: Case) -> Iterator[Remark]:
     unknown = [d.name for d in case.donors if d.name not in recipient.donor_ancestry_at_start]
     if unknown:
         left.append(f"ancestry at the start 0 from {', '.join(unknown)}")
-    if not recipient.effective_size_follows_adults:
+    if case.life_cycle is None or not recipient.effective_size_follows_adults:
         yield Remark(
             "size-held",
             "recipient.effective_size_follows_adults",

@@ -25,6 +25,7 @@ def on_life(case: Case) -> Iterator[Remark]:
             "Without a life cycle, numbers, growth and simulated animals are not projected; gene "
             "diversity, inbreeding, ancestry and tracked loci are.",
         )
+        yield from _without(case)
         return
     yield from _capped(case, life)
     yield from _generation(case, life)
@@ -37,6 +38,25 @@ def on_life(case: Case) -> Iterator[Remark]:
             "With a chance of each number of young, good and bad years act on the share of females "
             "that breed, at most all of them, which lowers the mean of simulated animals a little.",
         )
+
+
+def _without(case: Case) -> Iterator[Remark]:
+    """Yield what a case asks for that only a life cycle could give."""
+    if case.recipient.effective_size_follows_adults:
+        yield Remark(
+            "nothing-to-follow",
+            "recipient.effective_size_follows_adults",
+            "The effective size is to follow the adults, but without a life cycle there are none "
+            "to follow: it is held. Add a life cycle, or say no.",
+        )
+    for place, donor in enumerate(case.donors):
+        if donor.life_cycle == "same":
+            yield Remark(
+                "no-cycle-to-share",
+                f"donors[{place}].life_cycle",
+                f"The life cycle of {donor.name} is the same as the recipient’s, which is not "
+                "given: the donor counts as without one. Add one, or remove this.",
+            )
 
 
 def _inbreeding(case: Case) -> float:
