@@ -12,16 +12,19 @@ from tests.case.sample import changed, full, problems_of, small, with_release
     [
         ("plans[2].releases[0].when.first_year", 2026, "before the start"),
         ("plans[1].steady[0].from_year", 2026, "before the start"),
-        ("plans[1].steady[0].to_year", 2088, "after the horizon"),
+        ("plans[1].steady[0].from_year", 2088, "after the horizon"),
+        ("plans[1].steady[0].to_year", 2026, "before the start"),
         ("plans[2].other_actions[0].year", 2026, "before the start"),
         ("plans[2].other_actions[0].year", 2088, "after the horizon"),
-        ("trait.optimum_jump.year", 2026, "before the start"),
-        ("trait.optimum_jump.year", 2088, "after the horizon"),
         ("targets[0].by_year", 2026, "before the start"),
     ],
 )
 def test_that_an_event_outside_the_years_is_named(path, year, word):
     assert word in problems_of(changed(full(), path, year))[path]
+
+
+def test_that_flow_may_end_after_the_horizon():
+    assert problems_of(changed(full(), "plans[1].steady[0].to_year", 2088)) == {}
 
 
 def test_that_a_release_after_the_horizon_is_named():

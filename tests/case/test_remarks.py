@@ -378,3 +378,10 @@ def test_that_what_only_a_life_cycle_gives_is_said_and_stops_nothing():
     del shared["life_cycle"]
     assert "which is not given" in said(shared, "no-cycle-to-share")["donors[0].life_cycle"]
     assert said(full(), "nothing-to-follow") == said(full(), "no-cycle-to-share") == {}
+
+
+@pytest.mark.parametrize(("year", "word"), [(2026, "before the start"), (2088, "no effect")])
+def test_that_a_jump_outside_the_years_is_said_and_stops_nothing(year, word):
+    raw = changed(full(), "trait.optimum_jump.year", year)
+    assert word in said(raw, "jump-outside")["trait.optimum_jump.year"]
+    assert said(full(), "jump-outside") == {}

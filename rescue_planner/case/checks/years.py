@@ -53,8 +53,6 @@ def check_years(raw: Raw) -> Iterator[Problem]:
             first, last = value_at(action, "year"), value_at(action, "until_year")
             yield from span.problem(f"{where}.year", "The action", first)
             yield from _reversed(first, last, f"{where}.until_year")
-    jump = value_at(raw, "trait", "optimum_jump", "year")
-    yield from span.problem("trait.optimum_jump.year", "The jump of the optimum", jump)
     for which, target in parts(raw, "targets"):
         text = span.complaint("The target", value_at(target, "by_year"), only_start=True)
         if text:
@@ -78,7 +76,9 @@ def _release(span: _Span, release: Raw, where: str) -> Iterator[Problem]:
 def _interval(span: _Span, steady: Raw, where: str) -> Iterator[Problem]:
     first, last = value_at(steady, "from_year"), value_at(steady, "to_year")
     yield from span.problem(f"{where}.from_year", "The first year of the steady flow", first)
-    yield from span.problem(f"{where}.to_year", "The last year of the steady flow", last)
+    text = span.complaint("The last year of the steady flow", last, only_start=True)
+    if text:
+        yield Problem(f"{where}.to_year", text)
     yield from _reversed(first, last, f"{where}.to_year")
 
 
