@@ -38,6 +38,26 @@ def on_plans(case: Case) -> Iterator[Remark]:
         yield from _releases(case, plan, f"plans[{place}]")
     yield from _targets(case)
     yield from _what_ifs(case)
+    yield from _jump(case)
+
+
+def _jump(case: Case) -> Iterator[Remark]:
+    """Yield a jump of the optimum that lies outside the years looked at."""
+    jump = None if case.trait is None else case.trait.optimum_jump
+    if jump is None:
+        return
+    year, start = float(jump.year.best), float(case.time.start_year.best)
+    if year < start:
+        when = "before the start, so it counts from the start on"
+    elif year > start + float(case.time.horizon_years.best):
+        when = "after the horizon, so it takes no effect"
+    else:
+        return
+    yield Remark(
+        "jump-outside",
+        "trait.optimum_jump.year",
+        f"The jump of the optimum is in {year:g}, {when}. Correct the year if it is not meant.",
+    )
 
 
 def _lethal(case: Case, givers: set[str]) -> Iterator[Remark]:
