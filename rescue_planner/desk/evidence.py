@@ -12,6 +12,7 @@ from rescue_planner.case.document import Case
 from rescue_planner.case.filled import lethal_equivalents
 from rescue_planner.case.population import Donor
 from rescue_planner.case.quantity import FrozenMap, Quantity
+from rescue_planner.case.screening import SOURCE, screening
 
 KINDS = ("measured", "borrowed", "guessed", "not stated")
 
@@ -107,30 +108,17 @@ def target_in_words(case: Case, index: int) -> str:
 
 
 def screen_in_words(donor: Donor) -> str:
-    """Return what the screen's answers leave open or point at; never a verdict."""
-    screen = donor.screen
-    asked = {
-        "same species": getattr(screen, "same_species", None),
-        "fixed chromosome differences": getattr(screen, "fixed_chromosome_differences", None),
-        "years apart": getattr(screen, "years_apart", None),
-        "environment": getattr(screen, "environment_differs", None),
-    }
-    open_ = [name for name, held in asked.items() if held in (None, "unknown")]
-    raised = []
-    if asked["same species"] == "no":
-        raised.append("not the same species")
-    if asked["fixed chromosome differences"] == "yes":
-        raised.append("fixed chromosome differences")
-    apart = asked["years apart"]
-    if isinstance(apart, Quantity) and apart.best > 500:
-        raised.append("more than 500 years apart")
-    if asked["environment"] in ("some", "much"):
-        raised.append(f"environment differs ({asked['environment']})")
-    words = []
-    if raised:
-        words.append(f"Raises the risk of harm by mixing: {', '.join(raised)}.")
-    if open_:
-        words.append(f"Not known: {', '.join(open_)}; unknown is not low.")
-    if not words:
-        words.append("No answer raises the risk of harm by mixing; this is a screen, not a proof.")
-    return " ".join(words)
+    """Return the class of a donor's screen, then every question with its answer and reason."""
+    found = screening(donor)
+    signs = {"speaks for low": "○", "raises the risk": "▲", "between": "?", "unknown": "?"}
+    lines = [
+        f"{signs[one.state]}  {one.question.capitalize()}: {one.answer} – {one.state}; "
+        f"{one.reason}."
+        for one in found.findings
+    ]
+    return "\n".join([found.sentence, *lines, f"Source: {SOURCE}."])
+
+
+def screen_cautions(donor: Donor) -> str:
+    """Return what must be read with a donor's screen."""
+    return "\n".join(f"△ {words}" for words in screening(donor).cautions)

@@ -8,6 +8,7 @@ from rescue_planner.desk.evidence import (
     generations_in_words,
     inbreeding_cost_in_words,
     ratio_in_words,
+    screen_cautions,
     screen_in_words,
     target_in_words,
 )
@@ -39,8 +40,9 @@ def test_that_seven_diploid_are_three_and_a_half_haploid(small) -> None:
 
 def test_that_an_unanswered_screen_is_not_called_low(small) -> None:
     words = screen_in_words(small.donors[0])
-    assert words.startswith("Not known: same species, fixed chromosome differences")
-    assert "unknown is not low" in words
+    assert words.startswith("Risk of harm by mixing: cannot say, because of species, chromosomes")
+    assert words.count("unknown;") == 4
+    assert "Unknown is not low" in screen_cautions(small.donors[0])
 
 
 def test_that_answers_that_raise_the_risk_are_named(small) -> None:
@@ -55,9 +57,9 @@ def test_that_answers_that_raise_the_risk_are_named(small) -> None:
         },
     ).case
     words = screen_in_words(raised.donors[0])
-    assert "fixed chromosome differences" in words
-    assert "more than 500 years apart" in words
-    assert "environment differs (much)" in words
+    assert "Chromosomes: fixed differences – raises the risk" in words
+    assert "Years apart: 700 years – raises the risk; no exchange within 500 years" in words
+    assert "Environment: very different – raises the risk" in words
 
 
 def test_that_a_clean_screen_is_still_no_proof(small) -> None:
@@ -71,7 +73,8 @@ def test_that_a_clean_screen_is_still_no_proof(small) -> None:
             "environment_differs": "no",
         },
     ).case
-    assert screen_in_words(clean.donors[0]).endswith("this is a screen, not a proof.")
+    assert "mixing: low, as far as these four questions tell" in screen_in_words(clean.donors[0])
+    assert "Low does not mean none" in screen_cautions(clean.donors[0])
 
 
 def test_that_a_target_typed_as_a_share_is_told_in_the_per_cent_of_its_chart(small) -> None:

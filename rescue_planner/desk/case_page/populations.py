@@ -2,14 +2,16 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from functools import partial
 
 from rescue_planner.case.document import Case
 from rescue_planner.case.edits import Edit, add_donor, remove_donor, rename_donor
 from rescue_planner.case.paths import format_path
+from rescue_planner.case.population import Donor
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.desk.case_page.section import Section, SectionPlan
-from rescue_planner.desk.evidence import ratio_in_words, screen_in_words
+from rescue_planner.desk.evidence import ratio_in_words, screen_cautions, screen_in_words
 
 MARKERS = ((None, "not stated"), ("microsatellites", "microsatellites"), ("SNPs", "SNPs"),
            ("pedigree", "pedigree"), ("history", "history of numbers"))  # fmt: skip
@@ -89,12 +91,19 @@ def _donor(section: Section, case: Case, i: int) -> None:
 
 def _screen(section: Section, i: int) -> None:
     at = f"donors[{i}].screen"
-    section.choice(f"{at}.same_species", "Same species", ANSWERS)
-    section.choice(f"{at}.fixed_chromosome_differences", "Fixed chromosome differences", ANSWERS)
-    section.choice(f"{at}.environment_differs", "Environment differs", ENVIRONMENTS)
-    section.number(f"{at}.years_apart")
-    section.number(f"{at}.generations_apart")
-    section.line(lambda case: screen_in_words(case.donors[i]) if i < len(case.donors) else "")
+    section.choice(f"{at}.same_species", "Is it the same species?", ANSWERS)
+    section.choice(
+        f"{at}.fixed_chromosome_differences", "Do the chromosomes always differ?", ANSWERS
+    )
+    section.number(f"{at}.years_apart", "Years since they last exchanged animals")
+    section.choice(f"{at}.environment_differs", "Do the places differ?", ENVIRONMENTS)
+    section.number(f"{at}.generations_apart", "Generations since then")
+    section.line(partial(_of_donor, index=i, words=screen_in_words))
+    section.line(partial(_of_donor, index=i, words=screen_cautions), "caution")
+
+
+def _of_donor(case: Case, index: int, words: Callable[[Donor], str]) -> str:
+    return words(case.donors[index]) if index < len(case.donors) else ""
 
 
 def _new_donor(case: Case) -> Edit:
