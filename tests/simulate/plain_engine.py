@@ -381,25 +381,28 @@ class Run:
 
     def gamete(self, parent, rng):
         """Hand on one copy of every locus."""
-        handed = [0] * (self.markers + len(self.loci))
-        for chromosome in self.chromosomes:
-            strand = rng.random() < 0.5
-            breaks = []
-            if self.morgans:
-                n = poisson(rng, self.morgans)
-                breaks = sorted(rng.random() * self.morgans for _ in range(n))
-            for position, locus in chromosome:
-                if self.morgans is None:
-                    strand = rng.random() < 0.5
-                while breaks and breaks[0] < position:
-                    breaks.pop(0)
-                    strand = not strand
-                handed[locus] = parent.copies[strand][locus]
+        if self.morgans is None:
+            handed = [a if rng.random() < 0.5 else b for a, b in zip(*parent.copies, strict=True)]
+        else:
+            handed = self.linked_gamete(parent, rng)
         for k, locus in enumerate(self.loci):
             copy = handed[self.markers + k]
             chance = number(locus.get("mutation_from" if copy % 2 else "mutation_to"), 0.0)
             if chance and rng.random() < chance:
                 handed[self.markers + k] = copy ^ 1
+        return handed
+
+    def linked_gamete(self, parent, rng):
+        """Walk along each chromosome, changing strands at Poisson points (no interference)."""
+        handed = [0] * (self.markers + len(self.loci))
+        for chromosome in self.chromosomes:
+            strand = rng.random() < 0.5
+            breaks = sorted(rng.random() * self.morgans for _ in range(poisson(rng, self.morgans)))
+            for position, locus in chromosome:
+                while breaks and breaks[0] < position:
+                    breaks.pop(0)
+                    strand = not strand
+                handed[locus] = parent.copies[strand][locus]
         return handed
 
     def fresh_copies(self, source, rng):

@@ -41,7 +41,7 @@ def case(plan=None, donors=(), recipient=None, life=None, **changes):
             "young_per_breeding_female": {"mean": 1.0},
             "mating": {"form": "open"},
         },
-        "genome": {"markers": 20},
+        "genome": {"markers": 20, "chromosomes": 1},
         "plans": [{"name": "No releases"}, {"name": "P", **(plan or {})}],
     }
     made["recipient"] |= recipient or {}
@@ -219,7 +219,7 @@ def both_there(f, m):
     return f > 0 and m > 0 and f + m >= 3
 
 
-def chain_and_runs(life, skies, replicates=900, years=12, **changes):
+def chain_and_runs(life, skies, replicates=700, years=12, **changes):
     life = SMALL | {"fewest_adults": 3} | life
     made = case(
         recipient={"adults": 6, "adult_females": 3, "carrying_capacity": 7.9},
@@ -312,16 +312,23 @@ def test_that_mean_numbers_follow_the_age_matrix():
     }
     made = case(recipient={"adults": 80, "adult_females": 40}, life=life)
     runs = plain.run(made, "P", 200, seed=2, genetics=False)
-    herd = runs[0].herd
-    stable = np.array(herd.life.stable_ages(True, herd.growth))
-    numbers = 40 * stable / stable[1:].sum()
-    numbers[0] = math.floor(numbers[0] + 0.5)
-    assert herd.growth == pytest.approx(max(abs(np.linalg.eigvals(herd.life.matrix()))))
-    born = 0.9 * 1.5 * 0.5 * 0.5
+    life = runs[0].herd.life
+    growth = max(abs(np.linalg.eigvals(life.matrix())))
+    numbers = {}
+    for female, first in ((True, 2), (False, 3)):
+        survival = [0.7 if age < first else 0.8 for age in range(1, 6)]
+        stable = np.cumprod([1.0, *survival]) * growth ** -np.arange(6.0)
+        numbers[female] = 40 * stable / stable[first - 1 :].sum()
+        young = numbers[female][: first - 1]
+        young *= math.floor(young.sum() + 0.5) / young.sum()
     for year in range(1, 6):
-        older = numbers[:-1] * [0.7, 0.8, 0.8, 0.8, 0.8]
-        numbers = np.array([born * numbers[1:].sum(), *older])
-        assert_mean(plain.column(runs, "adult_females", year), numbers[1:].sum())
+        born = 0.9 * 1.5 * 0.5 * 0.5 * numbers[True][1:].sum()
+        for female, first in ((True, 2), (False, 3)):
+            survival = [0.7 if age < first else 0.8 for age in range(1, 6)]
+            numbers[female] = np.array([born, *(numbers[female][:-1] * survival)])
+        assert_mean(plain.column(runs, "adult_females", year), numbers[True][1:].sum())
+        assert_mean(plain.column(runs, "adult_males", year), numbers[False][2:].sum())
+        assert_mean(plain.column(runs, "young", year), 2 * born)
 
 
 def test_that_gradual_crowding_scales_recruitment_by_beverton_and_holt():
@@ -390,7 +397,7 @@ DIE_OFF = {"name": "cold", "chance_per_generation": 0.3, "lost_share": {"adult":
 
 @pytest.fixture(scope="module")
 def drifting():
-    return plain.run(generations(time={"horizon_years": 6}), "P", 200, seed=9)
+    return plain.run(generations(time={"horizon_years": 6}), "P", 150, seed=9)
 
 
 def test_that_kinship_and_inbreeding_follow_the_recursion_of_separate_sexes(drifting):
@@ -402,7 +409,7 @@ def test_that_kinship_and_inbreeding_follow_the_recursion_of_separate_sexes(drif
         if year > 1:
             assert_mean(plain.column(drifting, "inbreeding", year), rows[year][1])
     for year in (0, 1):  # founders' kinship is the F of the first young
-        assert plain.column(drifting, "inbreeding", year) == pytest.approx([0.25] * 200)
+        assert plain.column(drifting, "inbreeding", year) == pytest.approx([0.25] * 150)
 
 
 def test_that_markers_lose_diversity_as_the_pedigree_says(drifting):
@@ -772,13 +779,96 @@ def test_that_a_donor_gives_no_more_than_it_has():
     assert plain.run(made, "P")[0].years[1]["released"] == 6  # its females
 
 
+def still(plan=None, **changes):
+    """Return a case in which no young one lives and nobody else dies, the founders being young."""
+    none = {"what": "no young", "year": 2000, "first_year_survival_times": 0.0}
+    plan = plan or {}
+    plan |= {"other_actions": [none, *plan.get("other_actions", [])]}
+    made = case(plan=plan, **changes)
+    made["life_cycle"]["yearly_survival"] = {"first_year": 0.5, "subadult": 1.0, "adult": 1.0}
+    made["life_cycle"]["young_per_breeding_female"] = {"counts": {"12": 1.0}}
+    return made
+
+
+@pytest.mark.parametrize("drifts", [False, True])
+def test_that_a_donor_herd_loses_what_it_gives_in_the_same_year_and_regains_a_loan(drifts):
+    plan = {"releases": [release(5, 0, first=2001, every=2, times=2, loan_years=2)]}
+    plan["releases"][0]["afterwards"] = {"survive_to_breed": 0.5}
+    made = still(plan=plan, donors=["D"], time={"horizon_years": 6})
+    made["donors"][0] |= {"life_cycle": "same", "adults": 20, "drifts": drifts}
+    made["donors"][0]["adult_females"] = 20  # so none is born there
+    for each in plain.run(made, "P", 5):
+        lost = [row["flows"]["lost"] for row in each.years[:-1]]
+        donor = [row["donor_adults:D"] for row in each.years]
+        home = 20 - lost[1]
+        assert donor == [20, 20, 15, home, home - 5, *[home - lost[3]] * 2]
+        assert {row["donor_adults_without:D"] for row in each.years} == {20}
+        assert [row["adults"] for row in each.years][2:4] == [15 - lost[1], 10]
+
+
+def test_that_a_donor_herd_gives_the_animals_nearest_to_the_age_asked_for():
+    made = case(plan={"releases": [release(3, 0, age=7)]}, donors=["D"], life={"last_age": 9})
+    made["time"]["horizon_years"] = 0
+    made["donors"][0] |= {"life_cycle": "same", "adults": 40, "drifts": True}
+    run = plain.run(made, "P")[0]
+    ages = sorted(abs(a.age - 7) for a in run.donor_herds["D"][0].animals if a.female)
+    run.releases(2000, dict.fromkeys(("released", "lost", "steady"), 0))
+    assert sorted(abs(a.age - 7) for a in run.newcomers) == ages[:3]
+
+
+def test_that_money_and_newcomers_that_bred_add_up_from_the_year_after():
+    cost = {"each_animal": 10.0, "each_event": 100.0}
+    plan = {"releases": [release(2, 1, first=2001, every=2, times=2, cost=cost)]}
+    plan["other_actions"] = [
+        {"what": "a", "year": 2002, "until_year": 2004, "cost": 7.0, "carrying_capacity_times": 2.0}
+    ]
+    made = still(plan=plan, donors=["D"], time={"horizon_years": 5})
+    each = plain.run(made, "P")[0]
+    assert [row["cost"] for row in each.years] == [0, 0, 130, 137, 267, 267]
+    assert [row["effective_migrants"] for row in each.years] == [0, 0, 3, 3, 6, 6]
+
+
+def test_that_a_ceiling_is_rounded_down_and_follows_the_actions_of_its_years():
+    plan = {
+        "other_actions": [
+            {"what": "a", "year": 2000, "until_year": 2001, "carrying_capacity_times": 3.0},
+            {"what": "b", "year": 2004, "carrying_capacity_times": 0.5},
+        ]
+    }
+    recipient = {"adults": 20, "adult_females": 10, "carrying_capacity": 15.8}
+    each = plain.run(still(plan=plan, recipient=recipient), "P")[0]
+    assert [row["adults"] for row in each.years[:7]] == [20, 20, 20, 15, 15, 7, 7]
+
+
+def test_that_the_ceiling_spares_neither_sex():
+    recipient = {"adults": 30, "adult_females": 20, "carrying_capacity": 15}
+    made = still(recipient=recipient, time={"horizon_years": 1})
+    females = plain.column(plain.run(made, "P", 300, genetics=False), "adult_females", 1)
+    assert_mean(females, 10.0)
+    assert_mean([(f - 10.0) ** 2 for f in females], 15 * (2 / 3) * (1 / 3) * 15 / 29)
+
+
+def test_that_sources_follow_the_forms_of_fst_and_its_default():
+    made = case(donors=["D", "E"])
+    made["donors"][0] |= {"gene_diversity": 0.7, "fst_to_recipient": 0.1, "fst_form": "nei"}
+    made["donors"][1] |= {"gene_diversity": 0.5, "fst_to_recipient": 0.1}
+    made["donors"][1]["kinship_among_released"] = 0.45
+    sources = plain.Sources(made)
+    rd, re = 0.65 / (1.0 - 0.2 / 1.1), 0.55 / 0.9
+    assert sources.diversity[0][1:] == pytest.approx([rd, re])
+    assert sources.diversity[1][2] == pytest.approx(max((rd + re) / 2, 0.6))
+    assert not sources.kinship_changed
+    assert sources.kinship[2][2] == 0.45
+    assert sources.inbreeding == pytest.approx([0.25, 0.125, 0.375])
+    made["donors"][0]["fst_to_donors"] = {"E": 0.25}
+    assert plain.Sources(made).diversity[2][1] == pytest.approx(0.6 / (1.0 - 0.4))
+
+
 # --- rules ------------------------------------------------------------------------------------
 
 
 def ruled(rule, **plan):
-    made = case(plan={"rules": [{"name": "r"} | rule]} | plan, donors=["D"])
-    made["life_cycle"]["yearly_survival"] = dict.fromkeys(SURVIVAL, 1.0)
-    made["life_cycle"]["young_per_breeding_female"] = {"mean": 0.0}
+    made = still(plan={"rules": [{"name": "r"} | rule]} | plan, donors=["D"])
     return plain.run(made, "P", seed=1)[0]
 
 
