@@ -224,6 +224,23 @@ def same_father(males, unequal):
     return (1.0 + unequal**2) / (males + unequal**2)
 
 
+def kinship_of_young(same_mother, same_father_, kinship):
+    """Return the kinship of two young; their parents' kinship is also the parents' F.
+
+    The two copies come from two mothers, two fathers (a quarter each) or one of each.
+    """
+    twice = (1.0 + kinship) / 2.0
+    through = [same * twice + (1.0 - same) * kinship for same in (same_mother, same_father_)]
+    return 0.25 * sum(through) + 0.5 * kinship
+
+
+def mean_capped_at_one(share, cv):
+    """Return E[min(1, share X)], X lognormal with mean 1 and that CV."""
+    sigma = math.sqrt(math.log(1.0 + cv**2))
+    top = (math.log(1.0 / share) + sigma**2 / 2.0) / sigma
+    return float(share * ndtr(top - sigma) + 1.0 - ndtr(top))
+
+
 def copies_after_a_generation(adults, females, copies, fitness, next_adults):
     """Return the chances of 0..2n copies of A among the next adults, first selection included.
 

@@ -38,7 +38,7 @@ Census
 11. donor_adults: with removal; donor_adults_without beside it.
 Rules
 12. After a rule has acted the count of surveys starts anew; a survey without a value breaks it.
-    A rule's release that falls due after a stop is dropped.
+    With two bounds either is enough. A rule's release that falls due after a stop is dropped.
 Weather
 13. With counts, weather, die-offs and the mother's F all multiply the chance to breed, at most 1
     after all of them.

@@ -658,6 +658,35 @@ def test_that_two_young_share_a_father_as_often_as_the_weights_say(form, fathers
     assert_share(shared, oracles.same_father(fathers, unequal))
 
 
+@pytest.mark.parametrize("form", ["open", "harems", "pairs"])
+def test_that_unequal_males_raise_the_kinship_of_young(form):
+    mating = {"form": form, "share_of_males_breeding": 0.4, "unequal_success": 1.0}
+    made = generations(life={"mating": mating}, time={"horizon_years": 1})
+    runs = plain.run(made, "P", 120, seed=4)
+    one_mother = 1 / 10
+    holder = oracles.same_father(4, 1.0)
+    one_father = {
+        "open": oracles.same_father(10, 1.0),
+        "harems": one_mother + (1.0 - one_mother) * holder,  # sisters' father is one for a year
+        "pairs": one_mother,
+    }[form]
+    expected = oracles.kinship_of_young(one_mother, one_father, 0.25)
+    assert_mean(plain.column(runs, "kinship", 1), expected)
+
+
+def test_that_with_counted_litters_good_and_bad_years_act_on_the_chance_to_breed():
+    life = {"share_of_females_breeding": 0.8, "yearly_sd": {"young": 0.5}}
+    life["young_per_breeding_female"] = {"counts": {"2": 1.0}}
+    made = case(life=life, time={"horizon_years": 1})
+    born_ = [r.years[0]["flows"]["born"] for r in plain.run(made, "P", 1500, genetics=False)]
+    assert_mean(born_, 5 * 2 * oracles.mean_capped_at_one(0.8, 0.5))
+    assert {b % 2 for b in born_} == {0}
+    life |= {"yearly_sd": {"young": 0.0}, "survival_measured": "unrelated_parents"}
+    made = case(life=life, time={"horizon_years": 1}, inbreeding_cost=COST)
+    born_ = [r.years[0]["flows"]["born"] for r in plain.run(made, "P", 300)]
+    assert_mean(born_, 5 * 2 * 0.8 * math.exp(-2.0 * 0.25))
+
+
 def test_that_a_released_males_factor_weighs_his_chance_to_be_a_father():
     made = case(plan={"releases": [weighted(0, 5, 0.5)]}, donors=["D"], time={"horizon_years": 1})
     made["life_cycle"]["yearly_survival"] = {"first_year": 1.0, "subadult": 1.0, "adult": 1.0}
