@@ -388,8 +388,8 @@ def test_that_tab_goes_down_the_page(qtbot, page):
     page.measures_button.setFocus()
     wanted = [
         page.measures_button, page.export_button, page.averages.charts, page.odds.charts,
-        page.values.edit, page.values.rows, page.values.copy_button, page.values.table,
-        page.targets,
+        *page.sections.stops(), page.values.edit, page.values.rows, page.values.copy_button,
+        page.values.table, page.targets,
     ]  # fmt: skip
     seen = []
     for _ in wanted:

@@ -16,6 +16,8 @@ from rescue_planner.desk.charts.live_charts import LiveCharts, read_together
 from rescue_planner.desk.charts.shown import PanelSpec, specs
 from rescue_planner.desk.compare.chooser import LOCUS, MeasureChooser
 from rescue_planner.desk.compare.exporting import Exporter
+from rescue_planner.desk.compare.fold import Seen
+from rescue_planner.desk.compare.sections import Sections
 from rescue_planner.desk.compare.targets import target_table
 from rescue_planner.desk.compare.values import CopyingTable, ValueModel, ValuesAtYears
 from rescue_planner.desk.context import Desk
@@ -54,6 +56,7 @@ class ComparePage(QWidget):
         self.averages = LiveCharts(desk, "Charts of the average course", self._average_specs)
         self.odds = LiveCharts(desk, "Charts of tracked loci", self._locus_specs)
         self.locus_notes = LocusNotes(desk, self._loci_shown)
+        self.sections = Sections(self)
         self.values = ValuesAtYears(self)
         self.targets = CopyingTable("Target checks", self)
         self.target_model = ValueModel(self)
@@ -70,6 +73,7 @@ class ComparePage(QWidget):
         self.decision = text("", "soft")
         self.average_depth, self.odds_depth = text("", "note"), text("", "note")
         self.odds_heading = text("Tracked loci", "section")
+        self.values_rule = rule()
         self.values_heading = text("Values at chosen years", "section")
         self.events_heading = text("Rules that acted", "section")
         self.events, self.target_notes = text("", "small"), text("", "note")
@@ -110,7 +114,8 @@ class ComparePage(QWidget):
         column.addWidget(text(TRUST, "note"))
         below: tuple[QWidget, ...] = (
             self.averages, self.average_depth, self.odds_heading, self.odds,
-            self.locus_notes, self.odds_depth, rule(), self.values_heading, self.values,
+            self.locus_notes, self.odds_depth, self.sections,
+            self.values_rule, self.values_heading, self.values,
             self.targets_heading, self.targets, self.target_notes, self.events_heading,
             self.events,
         )  # fmt: skip
@@ -128,8 +133,8 @@ class ComparePage(QWidget):
         """Let Tab go down the page."""
         order: tuple[QWidget, ...] = (
             self.measures_button, self.chooser, self.export_button, self.averages.charts,
-            self.odds.charts, self.values.edit, self.values.rows, self.values.copy_button,
-            self.values.table, self.targets,
+            self.odds.charts, *self.sections.stops(), self.values.edit, self.values.rows,
+            self.values.copy_button, self.values.table, self.targets,
         )  # fmt: skip
         for before, after in itertools.pairwise(order):
             QWidget.setTabOrder(before, after)
@@ -180,6 +185,7 @@ class ComparePage(QWidget):
     def _replaced(self) -> None:
         self.chooser.forget()
         self.values.years = None
+        self.sections.forget()
         self.refresh()
 
     def _case_changed(self, _case: object) -> None:
@@ -211,6 +217,7 @@ class ComparePage(QWidget):
         if not document.has_case or comparison is None:
             if not document.has_case or self._stale:
                 self.values.show_values(None, (), ())
+                self.sections.show_seen(None)
                 self._show_rest(None, None)
             return
         self._stale = False
@@ -218,7 +225,9 @@ class ComparePage(QWidget):
         self._show_rest(document.case, comparison)
         case, keys = document.case, self.chooser.shown_keys()
         shown = tuple(key for key in keys if not no_input(case, key))
-        self.values.show_values(comparison, self.visible_plans(comparison), shown)
+        plans = self.visible_plans(comparison)
+        self.values.show_values(comparison, plans, shown)
+        self.sections.show_seen(Seen(case, comparison, plans, shown))
 
     def _show_rest(self, case: Case | None, comparison: Comparison | None) -> None:
         decision = case.decision.question if case is not None and case.decision else None
@@ -238,7 +247,7 @@ class ComparePage(QWidget):
         return (
             self.average_depth, self.odds_heading, self.odds, self.locus_notes, self.odds_depth,
             self.events_heading, self.events, self.targets_heading, self.targets,
-            self.target_notes, self.values, self.values_heading,
+            self.target_notes, self.values, self.values_heading, self.values_rule, self.sections,
         )  # fmt: skip
 
     def _show_depths(self, case: Case, comparison: Comparison) -> None:

@@ -1,0 +1,63 @@
+"""Small parts that the sections of the Compare page share: labelled choices in a flowing line."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from PySide6.QtCore import QSignalBlocker
+from PySide6.QtWidgets import QComboBox, QLabel, QSizePolicy, QWidget
+
+from rescue_planner.case.document import Case
+from rescue_planner.desk import theme
+from rescue_planner.projection import reading
+from rescue_planner.projection.results import Comparison
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Seen:
+    """What the page shows now: the case, its comparison, the plans and measures in their order."""
+
+    case: Case
+    comparison: Comparison
+    plans: tuple[str, ...]
+    keys: tuple[str, ...]
+
+    def named(self, plan: str) -> str:
+        """Return a plan's letter and name."""
+        return f"{reading.letter(self.comparison, plan)} {plan}"
+
+
+class Choice(QComboBox):
+    """A labelled choice among (key, words); what was chosen stays chosen while it is offered."""
+
+    def __init__(self, label: str, said: str, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.label = QLabel(label)
+        self.label.setBuddy(self)
+        self.setAccessibleName(said)
+        self.setMinimumHeight(theme.TARGET)
+        self.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToContents)
+        self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
+        self.setMinimumContentsLength(6)
+
+    def offer(self, offered: Sequence[tuple[object, str]], usual: int = 0) -> None:
+        """Offer these; keep the choice where it is among them, else take the usual one."""
+        now = [(self.itemData(i), self.itemText(i)) for i in range(self.count())]
+        if now == list(offered):
+            return
+        kept = self.currentData()
+        keys = [key for key, _ in offered]
+        blocker = QSignalBlocker(self)
+        self.clear()
+        for key, words in offered:
+            self.addItem(words, key)
+        if keys:
+            at = keys.index(kept) if kept in keys else min(usual, len(keys) - 1)
+            self.setCurrentIndex(at)
+        blocker.unblock()
+
+    def choose(self, key: object) -> None:
+        """Choose one that is offered."""
+        keys = [self.itemData(i) for i in range(self.count())]
+        self.setCurrentIndex(keys.index(key))
