@@ -27,7 +27,7 @@ from rescue_planner.case.spoken import counted, spoken_value
 
 Number = float | Quantity
 
-_RELEASE: dict[str, tuple[str, ...]] = {
+RELEASE: dict[str, tuple[str, ...]] = {
     "donor": ("donor",),
     "females": ("who", "females"),
     "males": ("who", "males"),
@@ -137,14 +137,15 @@ def _in_plan(raw: Raw, plan: str, kind: str) -> Path:
     return ("plans", index_of(raw, "plans", plan), kind)
 
 
-def _with_release(held: Raw, values: Mapping[str, Any]) -> Raw:
+def with_release(held: Raw, values: Mapping[str, Any]) -> Raw:
+    """Return a plain release with these values; None leaves one out."""
     for name, value in values.items():
-        if name not in _RELEASE:
+        if name not in RELEASE:
             raise TypeError(f"a release has no {name!r}")
         if value is not None:
-            held = put(held, _RELEASE[name], plain(value))
+            held = put(held, RELEASE[name], plain(value))
         else:
-            held = _dropped(held, _RELEASE[name])
+            held = _dropped(held, RELEASE[name])
     return held
 
 
@@ -185,7 +186,7 @@ def add_release(
     raw = to_raw(case)
     path = _in_plan(raw, plan, "releases")
     animals = {"females": females, "males": males, "first_year": first_year}
-    release = _with_release({"donor": donor}, {**animals, **given(more)})
+    release = with_release({"donor": donor}, {**animals, **given(more)})
     words = f"{_count(females, 'female')} and {_count(males, 'male')} from “{donor}”"
     sentence = f"Add a release of {words} in {_shown(first_year)} to plan “{plan}”"
     return done(sentence, append(raw, path, release))
@@ -213,7 +214,7 @@ def change_release(case: Case, plan: str, index: int, **changes: Number | str | 
     """
     raw = to_raw(case)
     path = (*_in_plan(raw, plan, "releases"), index)
-    release = _with_release(get(raw, path), changes)
+    release = with_release(get(raw, path), changes)
     words = ", ".join(_change(name, value) for name, value in changes.items())
     sentence = f"Change release {index + 1} of plan “{plan}”: {words}"
     return done(sentence, put(raw, path, release))
