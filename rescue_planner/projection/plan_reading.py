@@ -16,7 +16,7 @@ from rescue_planner.case.filled import (
     step_of,
     steps,
 )
-from rescue_planner.case.plans import Plan, RuleRelease
+from rescue_planner.case.plans import Plan, Release, RuleRelease
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.projection.reading import number, year_text
 from rescue_planner.projection.results import FloatArray, read_only
@@ -57,6 +57,50 @@ def chain(release: RuleRelease) -> Chain:
         float(release.afterwards.survive_to_breed.best),
         float(release.afterwards.breeding_relative_to_residents.best),
     )
+
+
+@dataclass(frozen=True, slots=True)
+class Fate:
+    """What becomes of all animals of a release, or of a plan, over all events: animals."""
+
+    name: str
+    events: int
+    released: float
+    survive: float
+    breed: float
+
+    def sentence(self) -> str:
+        """Return the fate as a chain, such as `10 released → 6 survive to breed → 2.4 …`."""
+        return (
+            f"{self.name}: {tidy(self.released)} released → {tidy(self.survive)} survive to breed "
+            f"→ {tidy(self.breed)} newcomers that breed"
+        )
+
+
+def fate(release: Release, index: int) -> Fate:
+    """Return what becomes of the animals of every event of a release."""
+    each, events = chain(release), sum(1 for _ in release.years())
+    name = f"Release {index + 1}" + (f", {events} times" if events > 1 else "")
+    survive = events * each.released * each.survive
+    return Fate(name, events, events * each.released, survive, events * each.newcomers)
+
+
+def plan_fate(plan: Plan) -> Fate:
+    """Return what becomes of the animals of all releases of a plan, before any rule acts."""
+    fates = [fate(release, index) for index, release in enumerate(plan.releases)]
+    return Fate(
+        "Whole plan",
+        sum(one.events for one in fates),
+        sum(one.released for one in fates),
+        sum(one.survive for one in fates),
+        sum(one.breed for one in fates),
+    )
+
+
+def fate_words(plan: Plan) -> str:
+    """Return the whole plan's chain as a sentence; empty without releases."""
+    whole = plan_fate(plan)
+    return f"{whole.sentence()}, before any rule acts." if plan.releases else ""
 
 
 @dataclass(frozen=True, slots=True)
