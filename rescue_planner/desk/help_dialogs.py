@@ -7,31 +7,9 @@ from PySide6.QtWidgets import QDialog, QDialogButtonBox, QGridLayout, QVBoxLayou
 
 from rescue_planner import __version__
 from rescue_planner.desk import theme
+from rescue_planner.desk.help_keys import KEYS
 from rescue_planner.desk.widgets import scrolled, text
 from rescue_planner.desk.work_strip import CAUTION
-
-KEYS = (
-    ("Tab, Shift+Tab", "Next or previous field"),
-    ("F6", "Next region: plans, pages, page, explainer, work strip"),
-    ("Ctrl+1, Ctrl+2, Ctrl+3", "Pages Case, Plans, Compare"),
-    ("Space on a plan", "Hide or show this plan everywhere"),
-    ("Enter", "Put a typed number into the case"),
-    ("Escape", "Take a typed number back"),
-    ("Up, Down", "Step a number; Page Up and Page Down step it ten times as far"),
-    ("Left, Right on a chart", "Read the values of all plans at a year"),
-    ("Up, Down on a chart", "Previous or next chart; the explainer tells what it shows"),
-    ("Ctrl+C on a chart or table", "Copy it as a table"),
-    ("F2, Delete, Alt+Up, Alt+Down in the plans", "Rename, remove, move a plan"),
-    ("Left, Right, +, −, Insert, Delete on the calendar", "Move, repeat, add, remove a release"),
-    ("Ctrl+Z, Ctrl+Y", "Undo, redo"),
-    ("Ctrl+N, Ctrl+O, Ctrl+S", "New case, open, save"),
-    ("Ctrl+Shift+S, Ctrl+E", "Save as, export"),
-    ("Ctrl+R", "Remarks"),
-    ("Ctrl++, Ctrl+−", "Larger or smaller text"),
-    ("Ctrl+W, Ctrl+Q", "Close the case, quit"),
-    ("F9", "Hide or show the explainer"),
-    ("Alt and a letter", "A menu"),
-)
 
 
 def _dialog(parent: QWidget, title: str, inner: QWidget) -> QDialog:

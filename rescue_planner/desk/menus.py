@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from functools import partial
 from pathlib import Path
-from typing import Protocol
+from typing import TYPE_CHECKING, Protocol
 
 from PySide6.QtCore import QObject
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
@@ -17,6 +17,9 @@ from rescue_planner.desk.file_actions import FileActions
 from rescue_planner.desk.settings import Settings
 from rescue_planner.desk.view import TEXT_SCALES
 
+if TYPE_CHECKING:
+    from rescue_planner.desk.help_window import HelpDesk
+
 
 class Commands(Protocol):
     """What the menus ask of the window."""
@@ -24,6 +27,7 @@ class Commands(Protocol):
     desk: Desk
     files: FileActions
     settings: Settings
+    current: str  # key of the page shown
 
     def show_start(self) -> None: ...
     def show_known(self) -> None: ...
@@ -58,6 +62,7 @@ class Menus(QObject):
         super().__init__(window)
         self._bar, self._window = window.menuBar(), commands
         self.needs_case: list[QAction] = []
+        self._help_desk: HelpDesk | None = None
         self._file()
         self._edit()
         self._view()
@@ -168,9 +173,22 @@ class Menus(QObject):
 
     def _help(self) -> None:
         menu = self._menu("&Help")
-        action(menu, "&Keyboard", self._window.show_keyboard, "F1")
+        action(menu, "Help on this &page", lambda: self.helper().show_here(), "F1")
+        action(menu, "&First ten minutes", lambda: self.helper().show_page("first-ten-minutes"))
+        action(menu, "&Glossary", lambda: self.helper().show_page("glossary"))
+        action(menu, "&Contents and search", lambda: self.helper().show_page("contents"))
+        menu.addSeparator()
+        action(menu, "&Keyboard", self._window.show_keyboard, "Shift+F1")
         about = action(menu, "&About Rescue Planner", self._window.show_about)
         about.setMenuRole(QAction.MenuRole.AboutRole)
+
+    def helper(self) -> HelpDesk:
+        """Return what opens the help; made when it is first asked for."""
+        if self._help_desk is None:
+            from rescue_planner.desk.help_window import HelpDesk
+
+            self._help_desk = HelpDesk(self._bar.window(), self._window)
+        return self._help_desk
 
     def refresh(self) -> None:
         """Grey what needs an open case; tick what is chosen."""
