@@ -5,6 +5,7 @@ from __future__ import annotations
 from PySide6.QtCore import QByteArray, QEvent, Qt, QUrl
 from PySide6.QtGui import (
     QKeySequence,
+    QResizeEvent,
     QShortcut,
     QTextBlock,
     QTextBlockFormat,
@@ -35,8 +36,10 @@ HERE = {
     "plans": "plans",
     "compare": "compare",
 }
+BY_NAME = (("Export", "export"), ("remark", "remarks"))  # part of an accessible name, page
 PLACE = Qt.ItemDataRole.UserRole  # (page, anchor) of a row
 FIRST = "contents"
+LETTERS = 96  # of a line, at most
 RING = (
     "QTextBrowser { border: 2px solid transparent; } "
     "QTextBrowser:focus { border: 2px solid palette(highlight); }"
@@ -58,6 +61,13 @@ class HelpBrowser(QTextBrowser):
 
     def loadResource(self, _kind: int, _name: QUrl | str) -> object:
         return QByteArray()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        most = self.fontMetrics().averageCharWidth() * LETTERS
+        spare = max(0, self.width() - most - theme.UNIT * 4)
+        if self.viewportMargins().right() != spare:
+            self.setViewportMargins(0, 0, spare, 0)
 
     def show_text(self, markdown: str, scale: float) -> None:
         """Show a page, its headings in the program's own sizes."""
@@ -151,7 +161,6 @@ class HelpWindow(QWidget):
         self._back: list[tuple[str, str]] = []
         self._forward: list[tuple[str, str]] = []
         self.search = QLineEdit()
-        self.search.setPlaceholderText("Search all pages")
         self.search.setAccessibleName("Search all pages of the help")
         self.search.setClearButtonEnabled(True)
         self.rows = QListWidget()
@@ -173,6 +182,9 @@ class HelpWindow(QWidget):
         column = QVBoxLayout(left)
         column.setContentsMargins(theme.UNIT, theme.UNIT, theme.UNIT, theme.UNIT)
         column.setSpacing(theme.UNIT)
+        asked = text("Search all pages", "note")
+        asked.setBuddy(self.search)
+        column.addWidget(asked)
         column.addWidget(self.search)
         column.addWidget(self.found)
         column.addWidget(self.rows, 1)
@@ -253,6 +265,7 @@ class HelpWindow(QWidget):
             row.setData(PLACE, (one.page, one.anchor))
         many = "place" if len(hits) == 1 else "places"
         said = f"Found in {len(hits)} {many}. Enter opens the first."
+        self.rows.scrollToTop()
         self.found.setText(said if hits else "Nothing found. Try one word, or part of a word.")
 
     def _open_first(self) -> None:
@@ -352,8 +365,9 @@ class HelpDesk:
         """Return the help page of what has the focus."""
         focused = QApplication.focusWidget()
         name = focused.accessibleName() if focused is not None else ""
-        if name.startswith("Export"):
-            return "export"
+        for start, key in BY_NAME:
+            if start in name:
+                return key
         return HERE.get(str(self._commands.current), FIRST)  # type: ignore[attr-defined]
 
     def show_here(self) -> None:

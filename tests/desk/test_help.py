@@ -2,13 +2,22 @@
 
 from __future__ import annotations
 
+import re
+from datetime import datetime
+
 import pytest
 from PySide6.QtCore import Qt, QUrl
 from PySide6.QtGui import QAction, QKeySequence, QTextCursor
-from PySide6.QtWidgets import QApplication, QListWidget
+from PySide6.QtWidgets import QAbstractButton, QApplication, QListWidget
 
+from rescue_planner.case.measures import MEASURES
+from rescue_planner.case.remarks import Remark
 from rescue_planner.desk import help_pages, theme
-from rescue_planner.desk.help_window import HelpWindow
+from rescue_planner.desk.help_window import HERE, LETTERS, HelpWindow
+from rescue_planner.desk.pages import start
+from rescue_planner.desk.rail import PAGES
+from rescue_planner.desk.recovery import Leftover
+from rescue_planner.desk.remark_list import RemarkDialog
 from rescue_planner.desk.view import ViewState
 
 
@@ -34,43 +43,34 @@ def _row(rows: QListWidget, title: str) -> int:
     return next(at for at in range(rows.count()) if rows.item(at).text() == title)
 
 
-@pytest.mark.parametrize(
-    ("page", "topic"),
-    [
-        ("start", "start"),
-        ("known", "new-case"),
-        ("case", "case"),
-        ("plans", "plans"),
-        ("compare", "compare"),
-    ],
-)
-def test_that_f1_opens_the_help_at_the_page_shown(qtbot, window, page, topic) -> None:
-    window.show_page(page)
-    _key_of(window, "F1").trigger()
+def test_that_f1_opens_the_help_at_the_page_shown_in_one_window(qtbot, window) -> None:
     helper = window.menus.helper()
-    assert helper.window.here == (topic, "")
-    assert helper.window.isVisible()
-    helper.window.close()
+    first = helper.window
+    for page, topic in HERE.items():
+        window.show_page(page)
+        _key_of(window, "F1").trigger()
+        assert helper.window.here == (topic, "")
+        assert helper.window.isVisible()
+        assert helper.window is first
+    assert set(HERE.values()) <= set(help_pages.page_keys())
+    assert set(HERE) >= {entry.key for entry in PAGES}
+    first.close()
 
 
-def test_that_f1_is_pressed_as_a_key_and_the_export_button_has_a_page_of_its_own(
+def test_that_f1_is_pressed_as_a_key_and_export_and_remarks_have_pages_of_their_own(
     qtbot, window
 ) -> None:
     window.show_page("compare")
+    helper = window.menus.helper()
     window.pages["compare"].export_button.setFocus()
     qtbot.keyClick(window, Qt.Key.Key_F1)
-    helper = window.menus.helper()
     qtbot.waitUntil(lambda: helper.window.here[0] == "export")
     helper.window.close()
-
-
-def test_that_one_window_serves_a_desk(window) -> None:
-    helper = window.menus.helper()
-    helper.show_page("glossary")
-    first = helper.window
-    helper.show_page("targets")
-    assert helper.window is first
-    first.close()
+    window.activateWindow()
+    qtbot.waitUntil(window.isActiveWindow)
+    window.work.say_remarks(2, 1)
+    window.work.remarks.setFocus()
+    assert helper.topic() == "remarks"
 
 
 def test_that_every_page_can_be_chosen_from_the_contents(helped) -> None:
@@ -195,3 +195,42 @@ def test_that_a_new_scheme_keeps_the_page_and_recolours_its_links(helped, qapp) 
     assert helped.here == ("start", "")
     assert theme.palette("dark").accent in helped.browser.toHtml()
     theme.apply(qapp, "light", 1.0)
+
+
+NAMED = ("first-ten-minutes", "start", "new-case", "plans", "compare", "export", "remarks",
+         "targets")  # fmt: skip
+NOT_CONTROLS = {"No releases", "borrowed", "guessed", "measured", "Met", "Stop", "Release"}
+
+
+def test_that_controls_named_by_the_help_are_on_the_desk_by_just_these_words(
+    qtbot, window, monkeypatch, tmp_path
+) -> None:
+    left = Leftover(tmp_path / "copy", "Two meadows", None, datetime(2027, 3, 1, 9, 30))
+    monkeypatch.setattr(start, "leftovers", lambda: [left])
+    window.show_start()
+    said = {measure.name for measure in MEASURES} | NOT_CONTROLS
+    for page in ("case", "plans", "compare", "start", "known"):
+        window.show_page(page)
+        said |= {one.text() for one in window.findChildren(QAbstractButton)}
+        said |= {one.text().replace("&", "") for one in window.findChildren(QAction)}
+    said |= {entry.name for entry in PAGES} | _words_of_remarks(window, qtbot)
+    named = {
+        words
+        for key in NAMED
+        for words in re.findall(r"(?<!\*)\*([^*]+)\*(?!\*)", help_pages.page(key))
+    }
+    assert named - said == set()
+
+
+def _words_of_remarks(window, qtbot) -> set[str]:
+    remark = Remark("recipient.effective_size", "asked", "Is this so?")
+    dialog = RemarkDialog(window.desk, [remark], window)
+    qtbot.addWidget(dialog)
+    return {one.text() for one in dialog.findChildren(QAbstractButton)}
+
+
+def test_that_long_lines_are_not_drawn_wider_than_can_be_read(qtbot, helped) -> None:
+    helped.resize(1900, 700)
+    QApplication.processEvents()
+    letters = helped.browser.viewport().width() / helped.fontMetrics().averageCharWidth()
+    assert 60 < letters <= LETTERS + 4
