@@ -4,12 +4,17 @@ import json
 from pathlib import Path
 
 import pytest
+from PySide6.QtCore import Qt
 
 from rescue_planner.advice.consequence_words import consequence_table
 from rescue_planner.advice.consequences import consequences
+from rescue_planner.advice.differences import difference, difference_table
+from rescue_planner.advice.reasons import why_table
 from rescue_planner.case.edits import set_value
 from rescue_planner.case.problems import read_case
+from rescue_planner.desk.compare.trade import LARGEST, LEAST, USUAL, radius
 from rescue_planner.desk.pages.compare import ComparePage
+from rescue_planner.projection.why import why
 
 MARSH = Path(__file__).parents[1] / "projection" / "marsh.json"
 
@@ -84,3 +89,71 @@ def test_that_hidden_sections_wait_until_they_are_shown(page, desk, table):
     assert table.shown is before
     page.show()
     assert table.shown is not before
+
+
+def test_that_the_points_of_the_trade_off_are_the_tables_and_stand_where_they_should(page, table):
+    (item,) = page.chooser.findItems("Cost", Qt.MatchFlag.MatchStartsWith)
+    item.setCheckState(Qt.CheckState.Checked)
+    trade = page.sections.trade_off
+    trade.across.choose("cost")
+    trade.up.choose("gene_diversity_kept")
+    table.year.setCurrentIndex(4)
+    frame = trade.chart.frame()
+    assert [point.plan for point in trade.chart.points] == list(table.shown.plans)
+    for point in trade.chart.points:
+        assert point.x == table.shown.cell(point.plan, "cost").value
+        assert point.y == table.shown.cell(point.plan, "gene_diversity_kept").value
+        at = frame.at(point.x, point.y)
+        assert frame.plot.contains(at)
+    dear = max(trade.chart.points, key=lambda point: point.x)
+    cheap = min(trade.chart.points, key=lambda point: point.x)
+    assert frame.at(dear.x, dear.y).x() > frame.at(cheap.x, cheap.y).x()
+
+
+def test_that_a_third_measure_is_the_area_of_the_marks(page, table):
+    trade = page.sections.trade_off
+    table.year.setCurrentIndex(4)
+    assert {radius(point) for point in trade.chart.points} == {USUAL}
+    trade.size_of.choose("adults")
+    adults = {plan: table.shown.cell(plan, "adults").value for plan in table.shown.plans}
+    for point in trade.chart.points:
+        wanted = LARGEST**2 * adults[point.plan] / max(adults.values())
+        assert radius(point) ** 2 == pytest.approx(max(wanted, LEAST**2))
+    assert "Area of a mark: Adults, animals" in trade.words.text()
+    assert trade.chart.accessibleDescription().split() == trade.words.text().split()
+
+
+def test_that_two_plans_are_told_apart_and_swapping_mirrors_the_table(page, desk):
+    against, comparison = page.sections.against, desk.live.comparison
+    keys = page.chooser.shown_keys()
+    assert (against.one.currentData(), against.other.currentData()) == ("Trickle", "No releases")
+    wanted = difference_table(comparison, "Trickle", "No releases", keys)
+    assert against.model.table == wanted
+    against.measure.choose("donor_ancestry")
+    found = difference(comparison, "Trickle", "No releases", "donor_ancestry")
+    assert against.chart.shown.values.tolist() == found.values.tolist()
+    against.swap_button.click()
+    assert against.model.table == difference_table(comparison, "No releases", "Trickle", keys)
+    assert against.chart.shown.values.tolist() == (-found.values).tolist()
+    assert "percentage points" in against.drawn.text()
+
+
+def test_that_the_why_panel_shows_the_parts_of_each_step(page, desk):
+    panel, comparison = page.sections.why, desk.live.comparison
+    panel.plan.choose("Every fourth year")
+    parts = why(desk.document.case, "Every fourth year", comparison)
+    assert panel.model.table == why_table(comparison, parts, "gene_diversity")
+    panel.topic.choose("allele_frequency:dark bill")
+    assert panel.model.table == why_table(comparison, parts, "allele_frequency:dark bill")
+    assert "Haldane 1924" in panel.notes.text()
+
+
+def test_that_one_plan_alone_needs_no_second(page, desk):
+    for plan in ("Trickle", "Every fourth year"):
+        desk.view.set_hidden(plan, True)
+    assert page.sections.against.one.currentData() == "No releases"
+    assert len(page.sections.trade_off.chart.points) <= 1
+    desk.view.set_hidden("No releases", True)
+    assert page.sections.consequences.shown.plans == ()
+    assert page.sections.against.model.rowCount() == 0
+    assert page.sections.why.model.rowCount() == 0

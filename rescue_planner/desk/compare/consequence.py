@@ -22,6 +22,8 @@ from rescue_planner.desk.widgets import button, text
 from rescue_planner.projection.reading import year_text
 from rescue_planner.projection.results import Comparison
 
+MORE = "Other measures, such as cost, are put in with Measures… at the top."
+
 
 class ConsequenceTable(QWidget):
     """All plans on all measures shown at one year; dominated plans are marked in words."""
@@ -51,8 +53,7 @@ class ConsequenceTable(QWidget):
     def _lay_out(self) -> None:
         top = FlowLayout()
         for choice in (self.year, self.measure, self.direction):
-            top.addWidget(choice.label)
-            top.addWidget(choice)
+            top.addWidget(choice.pair)
         top.addWidget(self.copy_button)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
@@ -104,21 +105,22 @@ class ConsequenceTable(QWidget):
             self.verdict.setText("")
             self.notes.setText("")
         else:
-            self.shown = consequences(
-                seen.case,
-                seen.comparison,
-                seen.plans,
-                seen.keys,
-                float(self.year.currentData()),
-                self._chosen,
-            )
+            self.shown = self._of(seen, seen.keys)
             self.model.show_table(consequence_table(seen.comparison, self.shown))
             self.verdict.setText("\n".join(dominance_sentences(seen.comparison, self.shown)))
-            self.notes.setText(" ".join(self.model.table.notes))
+            self.notes.setText(" ".join((*self.model.table.notes, MORE)))
         for label in (self.verdict, self.notes):
             label.setVisible(bool(label.text()))
         self.table.fit_height()
         self.changed.emit()
+
+    def _of(self, seen: Seen, keys: tuple[str, ...]) -> Consequences:
+        year = float(self.year.currentData())
+        return consequences(seen.case, seen.comparison, seen.plans, keys, year, self._chosen)
+
+    def of_every_measure(self) -> Consequences | None:
+        """Return the same table for all measures that were computed."""
+        return None if self._seen is None else self._of(self._seen, self._seen.every)
 
 
 def years_offered(comparison: Comparison) -> list[tuple[object, str]]:

@@ -6,22 +6,42 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from PySide6.QtCore import QSignalBlocker
-from PySide6.QtWidgets import QComboBox, QLabel, QSizePolicy, QWidget
+from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QSizePolicy, QWidget
 
 from rescue_planner.case.document import Case
 from rescue_planner.desk import theme
+from rescue_planner.desk.charts.look import Look
 from rescue_planner.projection import reading
 from rescue_planner.projection.results import Comparison
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Seen:
-    """What the page shows now: the case, its comparison, the plans and measures in their order."""
+    """What the page shows now: the case, its comparison, the plans and measures in their order.
+
+    `keys` are the measures chosen, `every` all that were computed.
+    """
 
     case: Case
     comparison: Comparison
     plans: tuple[str, ...]
     keys: tuple[str, ...]
+    every: tuple[str, ...]
+    look: Look
+
+    def is_like(self, other: Seen | None) -> bool:
+        """Return whether both show the same, so that nothing need be done."""
+        return (
+            other is not None
+            and self.case is other.case
+            and self.comparison is other.comparison
+            and (self.plans, self.keys, self.every) == (other.plans, other.keys, other.every)
+            and self.look == other.look
+        )
+
+    def offered_plans(self) -> list[tuple[object, str]]:
+        """Return the plans for a choice."""
+        return [(plan, self.named(plan)) for plan in self.plans]
 
     def named(self, plan: str) -> str:
         """Return a plan's letter and name."""
@@ -40,6 +60,12 @@ class Choice(QComboBox):
         self.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToContents)
         self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
         self.setMinimumContentsLength(6)
+        self.pair = QWidget(parent)  # the label stays beside its choice where lines break
+        row = QHBoxLayout(self.pair)
+        row.setContentsMargins(0, 0, 0, 0)
+        row.setSpacing(theme.UNIT)
+        row.addWidget(self.label)
+        row.addWidget(self)
 
     def offer(self, offered: Sequence[tuple[object, str]], usual: int = 0) -> None:
         """Offer these; keep the choice where it is among them, else take the usual one."""

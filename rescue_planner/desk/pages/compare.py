@@ -14,7 +14,7 @@ from rescue_planner.case.plans import NO_RELEASES
 from rescue_planner.desk import theme
 from rescue_planner.desk.charts.live_charts import LiveCharts, read_together
 from rescue_planner.desk.charts.shown import PanelSpec, specs
-from rescue_planner.desk.compare.chooser import LOCUS, MeasureChooser
+from rescue_planner.desk.compare.chooser import LOCUS, MeasureChooser, offered
 from rescue_planner.desk.compare.exporting import Exporter
 from rescue_planner.desk.compare.fold import Seen
 from rescue_planner.desk.compare.sections import Sections
@@ -227,7 +227,9 @@ class ComparePage(QWidget):
         shown = tuple(key for key in keys if not no_input(case, key))
         plans = self.visible_plans(comparison)
         self.values.show_values(comparison, plans, shown)
-        self.sections.show_seen(Seen(case, comparison, plans, shown))
+        every = tuple(key for key in offered(case, comparison) if not no_input(case, key))
+        look = self.averages.look()
+        self.sections.show_seen(Seen(case, comparison, plans, shown, every, look))
 
     def _show_rest(self, case: Case | None, comparison: Comparison | None) -> None:
         decision = case.decision.question if case is not None and case.decision else None
