@@ -13,7 +13,8 @@ from PySide6.QtWidgets import QAbstractButton, QApplication, QListWidget
 from rescue_planner.case.measures import MEASURES
 from rescue_planner.case.remarks import Remark
 from rescue_planner.desk import help_pages, theme
-from rescue_planner.desk.help_window import HERE, LETTERS, HelpWindow
+from rescue_planner.desk.help_browser import LETTERS
+from rescue_planner.desk.help_window import HERE, HelpWindow
 from rescue_planner.desk.pages import start
 from rescue_planner.desk.rail import PAGES
 from rescue_planner.desk.recovery import Leftover
