@@ -9,6 +9,7 @@ from __future__ import annotations
 import json
 import re
 from dataclasses import dataclass
+from functools import cache
 from pathlib import Path
 
 from pydantic import BaseModel, ConfigDict, Field, ValidationError, model_validator
@@ -99,7 +100,7 @@ def own_file() -> Path:
 
 def library() -> Library:
     """Return the shipped values with the user's own; a bad file of the user is a complaint."""
-    shipped = _read((places.resources() / "library.json").read_text("utf-8"))
+    shipped = _shipped()
     path = own_file()
     try:
         own = _read(_text(path)) if path.is_file() else ()
@@ -107,6 +108,11 @@ def library() -> Library:
         return Library(shipped, (), f"Your own published values in {path} cannot be read: "
                                     f"{_reason(wrong)} Mend or move the file.")  # fmt: skip
     return Library(shipped, own)
+
+
+@cache
+def _shipped() -> tuple[Published, ...]:
+    return _read((places.resources() / "library.json").read_text("utf-8"))
 
 
 def _text(path: Path) -> str:

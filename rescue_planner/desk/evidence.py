@@ -33,21 +33,44 @@ def quantities(held: Any) -> Iterator[Quantity]:  # noqa: ANN401 - any part of a
             yield from quantities(one)
 
 
-def evidence(case: Case) -> dict[str, int]:
-    """Count the numbers that describe the populations by origin; plans and targets are choices."""
+PARTS = {
+    "Time": "time",
+    "Recipient": "recipient",
+    "Donors": "donors",
+    "Life cycle": "life_cycle",
+    "Inbreeding cost": "inbreeding_cost",
+    "Tracked loci": "loci",
+    "Trait": "trait",
+}  # section of the page: part of the case; plans and targets are choices
+
+
+def tally(case: Case, section: str) -> dict[str, int]:
+    """Count the numbers that a section was given by origin, as the annex has them."""
     counts = dict.fromkeys(KINDS, 0)
-    described = (
-        case.time.generation_years, case.recipient, case.donors, case.loci, case.life_cycle,
-        case.inbreeding_cost, case.trait,
-    )  # fmt: skip
-    for held in quantities(described):
+    for held in quantities(getattr(case, PARTS[section])) if section in PARTS else ():
         counts[held.origin or "not stated"] += 1
     return counts
 
 
+def tally_in_words(case: Case, section: str) -> str:
+    """Return the counts of a section as one line; empty where it was given no number."""
+    counts = tally(case, section)
+    return _counted(counts) if any(counts.values()) else ""
+
+
+def evidence(case: Case) -> dict[str, int]:
+    """Count the numbers of all sections by origin."""
+    counts = [tally(case, section) for section in PARTS]
+    return {kind: sum(one[kind] for one in counts) for kind in KINDS}
+
+
 def evidence_in_words(case: Case) -> str:
     """Return the counts as one line."""
-    return "  ·  ".join(f"{count} {kind}" for kind, count in evidence(case).items())
+    return _counted(evidence(case))
+
+
+def _counted(counts: dict[str, int]) -> str:
+    return "  ·  ".join(f"{count} {kind}" for kind, count in counts.items())
 
 
 def ratio_in_words(case: Case) -> str:
@@ -107,16 +130,30 @@ def target_in_words(case: Case, index: int) -> str:
     )
 
 
+def removal_in_words(donor: Donor) -> str:
+    """Return what an unstated removal limit means; nothing where one is stated."""
+    if donor.most_removed_per_year is not None:
+        return ""
+    return (
+        "△ Most removed a year: not stated, which is not unlimited. Removal limits are set by "
+        "those responsible for the donor population: ask them."
+    )
+
+
 def screen_in_words(donor: Donor) -> str:
-    """Return the class of a donor's screen, then every question with its answer and reason."""
-    found = screening(donor)
+    """Return every question of a donor's screen with its answer and reason."""
     signs = {"speaks for low": "○", "raises the risk": "▲", "between": "?", "unknown": "?"}
     lines = [
         f"{signs[one.state]}  {one.question.capitalize()}: {one.answer} – {one.state}; "
         f"{one.reason}."
-        for one in found.findings
+        for one in screening(donor).findings
     ]
-    return "\n".join([found.sentence, *lines, f"Source: {SOURCE}."])
+    return "\n".join([*lines, f"Source: {SOURCE}."])
+
+
+def screen_class(donor: Donor) -> str:
+    """Return the class of a donor's screen in one sentence."""
+    return screening(donor).sentence
 
 
 def screen_cautions(donor: Donor) -> str:

@@ -24,6 +24,7 @@ if TYPE_CHECKING:
     from rescue_planner.case.edits import Edit
     from rescue_planner.case.inputs import Input
     from rescue_planner.case.quantity import Quantity
+    from rescue_planner.desk.case_page.unknown import AtHand
 
 OPENING = "Put the cursor into a number, and its meaning, unit, bounds and source are told here."
 
@@ -44,6 +45,7 @@ class Explainer(QWidget):
         self._published = text("", "small")
         self._caution = text("", "caution")
         self._origin = _OriginForm(desk)
+        self.at_hand: AtHand | None = None
         self._lay_out()
         desk.explain.asked.connect(self.show_path)
         desk.document.changed.connect(self._refresh)
@@ -61,6 +63,8 @@ class Explainer(QWidget):
         column.addWidget(self._caution)
         column.addWidget(self._published)
         column.addWidget(self._origin)
+        self._below = QVBoxLayout()
+        column.addLayout(self._below)
         column.addStretch(1)
         for label in inner.findChildren(QLabel):
             if label.parent() is inner:
@@ -82,6 +86,7 @@ class Explainer(QWidget):
     def clear(self) -> None:
         """Explain nothing."""
         self._path = ""
+        self._show_at_hand("")
         for label in (self._heading, self._unit, self._bounds, self._published, self._caution):
             self._say(label, "")
         self._say(self._heading, "Explainer")
@@ -93,15 +98,32 @@ class Explainer(QWidget):
         label.setText(words)
         label.setVisible(bool(words))
 
+    def _show_at_hand(self, path: str) -> None:
+        """Show what has been published for a number, and ways to it; nothing for other paths."""
+        if self.at_hand is not None and self.at_hand.path == path:
+            return
+        if self.at_hand is not None:
+            self.at_hand.retire()
+            self._below.removeWidget(self.at_hand)
+            self.at_hand.hide()
+            self.at_hand.deleteLater()
+            self.at_hand = None
+        if path and self._desk.document.has_case:
+            from rescue_planner.desk.case_page.unknown import AtHand
+
+            self.at_hand = AtHand(self._desk, path)
+            self._below.addWidget(self.at_hand)
+
     def show_path(self, path: str) -> None:
         """Explain an input by its path, or a measure by its key."""
-        from rescue_planner.case.fields import definition_at
+        from rescue_planner.case.fields import definition_at, is_number
 
         try:
-            definition = definition_at(parse_path(path))
+            definition, number = definition_at(parse_path(path)), is_number(parse_path(path))
         except ValueError:
-            definition = None
+            definition, number = None, False
         self._path = path
+        self._show_at_hand(path if number else "")
         if definition is not None:
             self._show_input(definition)
             self._refresh()

@@ -100,6 +100,8 @@ def _new_life(case: Case) -> Edit:
 def _cost(section: Section, _case: Case) -> None:
     at = "inbreeding_cost.lethal_equivalents_diploid"
     section.number(f"{at}.first_year", "First-year survival, diploid")
+    section.unknown(f"{at}.first_year", "lethal equivalents, first year", forms=False)
+    section.ways(f"{at}.first_year")
     section.number(f"{at}.young_per_female", "Young per female, diploid")
     section.line(inbreeding_cost_in_words, "")
     section.choice("inbreeding_cost.how", "How it acts", HOW)

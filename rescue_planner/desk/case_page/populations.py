@@ -11,7 +11,13 @@ from rescue_planner.case.paths import format_path
 from rescue_planner.case.population import Donor
 from rescue_planner.case.quantity import Quantity
 from rescue_planner.desk.case_page.section import Section, SectionPlan
-from rescue_planner.desk.evidence import ratio_in_words, screen_cautions, screen_in_words
+from rescue_planner.desk.evidence import (
+    ratio_in_words,
+    removal_in_words,
+    screen_cautions,
+    screen_class,
+    screen_in_words,
+)
 
 MARKERS = ((None, "not stated"), ("microsatellites", "microsatellites"), ("SNPs", "SNPs"),
            ("pedigree", "pedigree"), ("history", "history of numbers"))  # fmt: skip
@@ -30,13 +36,16 @@ def _recipient(section: Section, case: Case) -> None:
     section.number("recipient.breeding_females")
     section.number("recipient.breeding_males")
     section.number("recipient.effective_size")
+    section.unknown("recipient.effective_size", "effective size (Ne)")
     section.line(ratio_in_words)
     section.check(
         "recipient.effective_size_follows_adults",
         "Ne follows the number of adults (needs a life cycle)",
     )
     section.number("recipient.gene_diversity")
+    section.unknown("recipient.gene_diversity", "gene diversity")
     section.number("recipient.reference_gene_diversity")
+    section.unknown("recipient.reference_gene_diversity", "reference gene diversity")
     section.choice("recipient.markers", "Markers", MARKERS)
     section.number("recipient.carrying_capacity")
     section.number("recipient.isolated_since")
@@ -76,8 +85,14 @@ def _donor(section: Section, case: Case, i: int) -> None:
     for other in case.donors[:i]:
         path = format_path(("donors", i, "fst_to_donors", other.name))
         section.number(path, f"FST to {other.name}")
-    section.numbers(f"{at}.most_removed_per_year", f"{at}.fewest_left", f"{at}.carrying_capacity")
+    section.number(f"{at}.most_removed_per_year")
+    section.unknown(
+        f"{at}.most_removed_per_year", f"most removed a year from {case.donors[i].name}"
+    )
+    section.line(partial(_of_donor, index=i, words=removal_in_words), "caution")
+    section.numbers(f"{at}.fewest_left", f"{at}.carrying_capacity")
     section.number(f"{at}.effective_size")
+    section.unknown(f"{at}.effective_size", f"effective size (Ne) of {case.donors[i].name}")
     section.check(f"{at}.drifts", "Its own diversity drifts with its Ne")
     section.number(f"{at}.kinship_among_released")
     if case.trait is not None:
@@ -98,6 +113,7 @@ def _screen(section: Section, i: int) -> None:
     section.number(f"{at}.years_apart", "Years since they last exchanged animals")
     section.choice(f"{at}.environment_differs", "Do the places differ?", ENVIRONMENTS)
     section.number(f"{at}.generations_apart", "Generations since then")
+    section.line(partial(_of_donor, index=i, words=screen_class), "")
     section.line(partial(_of_donor, index=i, words=screen_in_words))
     section.line(partial(_of_donor, index=i, words=screen_cautions), "caution")
 

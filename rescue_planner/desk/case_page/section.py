@@ -18,7 +18,9 @@ from PySide6.QtWidgets import (
 
 from rescue_planner.case.document import Case
 from rescue_planner.desk import theme
+from rescue_planner.desk.case_page.unknown import AtHand, Unknown
 from rescue_planner.desk.context import Desk
+from rescue_planner.desk.evidence import tally_in_words
 from rescue_planner.desk.fields import (
     CheckField,
     ChoiceField,
@@ -58,7 +60,7 @@ class Section(QWidget):
         self.desk, self._plan = desk, plan
         self._fields: list[Fields] = []
         self._lines: list[tuple[QLabel, Callable[[Case], str]]] = []
-        self._notes: list[LocusNotes] = []
+        self._notes: list[LocusNotes | Unknown | AtHand] = []
         self._parts: object = None
         self._body: QWidget | None = None
         self._column = QVBoxLayout(self)
@@ -69,6 +71,8 @@ class Section(QWidget):
         self._column.addWidget(rule())
         if plan.lead:
             self._column.addWidget(text(plan.lead, "soft"))
+        self.tally = text("", "small")
+        self._column.addWidget(self.tally)
         self.problem = text("", "problem")
         self.problem.hide()
         self._column.addWidget(self.problem)
@@ -82,6 +86,7 @@ class Section(QWidget):
         if self._body is None or parts != self._parts:
             self._parts = parts
             self._rebuild(case)
+        _say(self.tally, tally_in_words(case, self._plan.title))
         for label, words in self._lines:
             _say(label, words(case))
 
@@ -113,6 +118,18 @@ class Section(QWidget):
     def number(self, path: str, label: str | None = None, unit: str | None = None) -> None:
         """Add a number."""
         self._add(NumberField(self.desk, path, label=label, unit=unit))
+
+    def unknown(self, path: str, name: str, *, forms: bool = True) -> None:
+        """Add the link that opens what helps where the number above is not known."""
+        self._let_go_later(Unknown(self.desk, path, name, forms=forms))
+
+    def ways(self, path: str) -> None:
+        """Add the ways to the number above, open from the start."""
+        self._let_go_later(AtHand(self.desk, path, published=False))
+
+    def _let_go_later(self, made: LocusNotes | Unknown | AtHand) -> None:
+        self._notes.append(made)
+        self._rows.addWidget(made)
 
     def numbers(self, *paths: str) -> None:
         """Add several numbers."""
@@ -150,9 +167,7 @@ class Section(QWidget):
 
     def notes(self, locus: str) -> None:
         """Add what theory says of a tracked locus."""
-        made = LocusNotes(self.desk, lambda _case: (locus,), named=False)
-        self._notes.append(made)
-        self._rows.addWidget(made)
+        self._let_go_later(LocusNotes(self.desk, lambda _case: (locus,), named=False))
 
     def caution(self, words: str) -> None:
         """Add a standing caution."""

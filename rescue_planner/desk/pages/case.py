@@ -68,7 +68,7 @@ class CasePage(QWidget):
         """Follow the case."""
         self.title.setText(case.title)
         self.species.setText(" · ".join(p for p in (case.species, case.authority) if p))
-        self.evidence.setText(f"Numbers that describe the populations: {evidence_in_words(case)}")
+        self.evidence.setText(f"Numbers entered here, targets aside: {evidence_in_words(case)}")
 
     def go_to(self, name: str) -> None:
         """Bring a section to the top and its first field into focus."""
