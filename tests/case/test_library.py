@@ -11,7 +11,13 @@ from rescue_planner.case.document import Case
 from rescue_planner.case.edits import set_source, set_value
 from rescue_planner.case.faults import InvalidCase
 from rescue_planner.case.fields import definition_at, is_number
-from rescue_planner.case.known import Known, draft
+from rescue_planner.case.known import (
+    LETHAL_EQUIVALENTS,
+    REFERENCE_DIVERSITY,
+    SHARE_OF_ADULTS,
+    Known,
+    draft,
+)
 from rescue_planner.case.library import (
     LibraryError,
     Published,
@@ -171,3 +177,14 @@ def test_that_a_value_of_the_case_is_kept_with_its_source_only(case) -> None:
     keep(entry_from(stated, path))
     assert library().fitting(path)[0].best == 46
     assert json.loads(own_file().read_text("utf-8"))["entries"][0]["source"] == "count of 2026"
+
+
+def test_that_a_first_case_borrows_what_the_published_values_say() -> None:
+    # a case begun from what is known, and a value borrowed later, must not differ
+    ratio, reference = _entry("ne-ratio-assumed"), _entry("reference-mammals")
+    assert (ratio.best, ratio.low, ratio.high) == SHARE_OF_ADULTS
+    assert (reference.best, reference.low, reference.high) == REFERENCE_DIVERSITY
+    wild, captive, life = (
+        _entry(f"lethals-{one}").best for one in ("wild-maturity", "captive-juvenile", "wild-life")
+    )
+    assert (wild, captive, life) == LETHAL_EQUIVALENTS

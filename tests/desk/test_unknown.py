@@ -138,12 +138,19 @@ def test_that_the_explainer_offers_the_same_for_the_number_with_the_focus(qtbot,
     assert window.explainer.at_hand is None
 
 
-def test_that_help_for_a_donor_that_is_gone_lets_the_case_be(qtbot, window) -> None:
-    from rescue_planner.case.edits import add_donor, remove_donor
+def test_that_nothing_can_be_used_for_a_donor_that_is_gone_until_it_is_back(qtbot, window) -> None:
+    from rescue_planner.case.edits import add_donor, remove_donor, set_value
 
     document = window.desk.document
     document.apply(add_donor(document.case, "Far Meadow", 0.6, 0.1, {"winter coat": 0}))
+    document.apply(set_value(document.case, "donors[1].adults", 400))
     window.desk.explain.show("donors[1].effective_size")
-    assert window.explainer.at_hand.ways
+    at_hand = window.explainer.at_hand
+    form = _form(at_hand, "ratio")
+    assert form.use.text() == "Use 60"
     document.apply(remove_donor(document.case, "Far Meadow"))
-    assert len(document.case.donors) == 1
+    usable = [link for link in (form.use, *at_hand.published.uses) if link.isEnabled()]
+    assert usable == []
+    document.undo_stack.undo()
+    _press(qtbot, form.use)
+    assert document.case.donors[1].effective_size.best == 60

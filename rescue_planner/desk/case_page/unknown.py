@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QEvent, Qt
 from PySide6.QtGui import QWheelEvent
 from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QLineEdit, QVBoxLayout, QWidget
 
@@ -19,6 +19,23 @@ from rescue_planner.desk.numbers import read_number, value_at, written
 from rescue_planner.desk.widgets import Link, text
 
 CHOOSE = "choose"
+
+
+class _Number(QLineEdit):
+    """A line for a number, as wide as numbers are at the size of text in force."""
+
+    def __init__(self, words: str) -> None:
+        super().__init__(words)
+        self.setAlignment(Qt.AlignmentFlag.AlignRight)
+        self._fit()
+
+    def changeEvent(self, event: QEvent) -> None:
+        super().changeEvent(event)
+        if event.type() in (QEvent.Type.FontChange, QEvent.Type.StyleChange):
+            self._fit()
+
+    def _fit(self) -> None:
+        self.setFixedWidth(self.fontMetrics().horizontalAdvance("0" * 9) + 20)
 
 
 class _Choice(QComboBox):
@@ -73,10 +90,7 @@ class WayForm(QWidget):
             made.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
             made.currentIndexChanged.connect(self._changed)
         else:
-            made = QLineEdit(written(held) if held is not None else "")
-            made.setAlignment(Qt.AlignmentFlag.AlignRight)
-            made.setMinimumWidth(theme.UNIT * 6)
-            made.setMaximumWidth(made.fontMetrics().averageCharWidth() * 14)
+            made = _Number(written(held) if held is not None else "")
             made.textChanged.connect(self._changed)
         made.setMinimumHeight(theme.TARGET)
         made.setAccessibleName(f"{ask.words}, {ask.unit}" if ask.unit else ask.words)
@@ -166,12 +180,13 @@ class AtHand(QWidget):
         desk.document.changed.connect(self.refresh)
 
     def refresh(self, case: Case) -> None:
-        """Follow the case, unless it has lost the donor or plan that this is about."""
+        """Follow the case; where it lost the donor or plan this is about, nothing can be used."""
         steps = steps_of(self.path)
         cut = max((at + 1 for at, step in enumerate(steps) if isinstance(step, int)), default=0)
-        if value_at(case, steps[:cut]) is not None:
-            for form in self.ways:
-                form.refresh(case)
+        present = value_at(case, steps[:cut]) is not None
+        self.setEnabled(present)
+        for form in self.ways if present else ():
+            form.refresh(case)
 
     def retire(self) -> None:
         """Let go of the case before this is taken away."""
