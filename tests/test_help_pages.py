@@ -20,8 +20,8 @@ from rescue_planner.case.what_if import applied
 from rescue_planner.desk import help_pages
 from rescue_planner.desk.help_keys import KEYS
 from rescue_planner.projection import reading
-from rescue_planner.projection.compare import compare
-from rescue_planner.projection.results import Comparison
+from rescue_planner.projection.compare import LIVE_DEPTHS, compare
+from rescue_planner.projection.results import DEPTH_NAMES, Comparison
 from rescue_planner.theory.inbreeding import survival_factor
 from rescue_planner.theory.size import from_sexes, retained
 
@@ -165,8 +165,8 @@ def test_that_marks_of_checked_numbers_are_not_seen_by_readers() -> None:
 
 def _sentences(key: str) -> list[str]:
     found = []
-    for one in help_pages.sections(key):
-        lines = re.split(r"(?<=[.!?:;])\s+(?=[A-Z“*0-9])", one.body)
+    for paragraph in help_pages.page(key).splitlines():  # an entry of a list is its own
+        lines = re.split(r"(?<=[.!?:;])\s+(?=[A-Z“*0-9])", help_pages.plain(paragraph))
         found += [line for line in lines if len(line.split()) > 2]
     return found
 
@@ -195,6 +195,14 @@ def test_that_the_glossary_is_in_order_of_the_alphabet_and_holds_what_the_screen
         "observed heterozygosity", "additive genetic variance", "annex", "projection", "measure",
     }  # fmt: skip
     assert asked <= set(terms)
+
+
+def test_that_the_page_of_depths_names_all_depths_and_the_two_that_the_desk_shows() -> None:
+    """Once the desk shows simulated animals, depths.md and the glossary have to say so."""
+    headings = {one.heading.casefold() for one in help_pages.sections("depths")}
+    assert set(DEPTH_NAMES.values()) <= headings
+    assert LIVE_DEPTHS == ("expected", "exact")
+    assert "The desk of this version does not show it." in help_pages.page("depths")
 
 
 # numbers
