@@ -15,7 +15,7 @@ import math
 import numpy as np
 from numpy.typing import NDArray
 
-from rescue_planner.kernels.compiled import kernel
+from rescue_planner.kernels.inner import leaf
 from rescue_planner.kernels.streams import Words, below, uniform
 
 FloatArray = NDArray[np.float64]
@@ -25,7 +25,7 @@ FEW = 10.0  # expected successes below which a search from zero is quicker than 
 _HALF_STEP = 2.0**-54
 
 
-@kernel
+@leaf
 def normal_quantile(u: float) -> float:
     """Return the standard normal quantile at 0 < u < 1 (AS 241, relative error about 1e-16)."""
     q = u - 0.5
@@ -106,13 +106,13 @@ def normal_quantile(u: float) -> float:
     return -top / bottom if q < 0.0 else top / bottom
 
 
-@kernel
+@leaf
 def normal(s: Words, k: int) -> float:
     """Return a standard normal number: the quantile at one uniform, so one word for each."""
     return normal_quantile(uniform(s, k) + _HALF_STEP)
 
 
-@kernel
+@leaf
 def poisson(s: Words, k: int, mean: float) -> int:
     """Return a Poisson number; `mean` at least 0. Search below a mean of 10, PTRS above."""
     if mean <= 0.0:
@@ -146,7 +146,7 @@ def poisson(s: Words, k: int, mean: float) -> int:
             return int(x)
 
 
-@kernel
+@leaf
 def _binomial_low(s: Words, k: int, n: int, p: float) -> int:
     """Return a binomial number for 0 < p <= 1/2. Search below 10 expected, BTRS above."""
     odds = p / (1.0 - p)
@@ -183,7 +183,7 @@ def _binomial_low(s: Words, k: int, n: int, p: float) -> int:
             return int(y)
 
 
-@kernel
+@leaf
 def binomial(s: Words, k: int, n: int, p: float) -> int:
     """Return how many of `n` succeed with chance `p` each; p outside 0..1 counts as its end."""
     if n <= 0 or p <= 0.0:
@@ -195,7 +195,7 @@ def binomial(s: Words, k: int, n: int, p: float) -> int:
     return n - _binomial_low(s, k, n, 1.0 - p)
 
 
-@kernel
+@leaf
 def gamma(s: Words, k: int, shape: float) -> float:
     """Return a gamma number of scale 1; `shape` above 0 (Marsaglia & Tsang, with the boost)."""
     boost = 1.0
@@ -213,7 +213,7 @@ def gamma(s: Words, k: int, shape: float) -> float:
             return boost * d * v
 
 
-@kernel
+@leaf
 def unequal(s: Words, k: int, cv: float) -> float:
     """Return a gamma number of mean 1 and coefficient of variation `cv`; 1 where that is 0."""
     if cv <= 0.0:
@@ -222,7 +222,7 @@ def unequal(s: Words, k: int, cv: float) -> float:
     return gamma(s, k, shape) / shape
 
 
-@kernel
+@leaf
 def shuffle(s: Words, k: int, items: IntArray, count: int) -> None:
     """Put the first `count` items in a random order (Fisher & Yates)."""
     for i in range(count - 1, 0, -1):
@@ -230,7 +230,7 @@ def shuffle(s: Words, k: int, items: IntArray, count: int) -> None:
         items[i], items[j] = items[j], items[i]
 
 
-@kernel
+@leaf
 def pick(s: Words, k: int, sums: FloatArray, count: int) -> int:
     """Return an index 0..count-1 with chance by weight; `sums` holds the running sums."""
     total = sums[count - 1]

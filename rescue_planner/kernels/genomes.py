@@ -3,11 +3,11 @@
 A genome is a (slots, 2, planes, words) array of uint64: two haplotypes an animal, 64 markers a
 word. Plane 0 holds the alleles; the other planes hold, bit by bit, the number of the population
 each copy came from (0 the recipient, d + 1 the donor d), so that ancestry is realised, copy by
-copy. Every chromosome starts on a word of its own; bits that stand for no marker are 0 throughout.
+copy. Chromosomes follow one another without a gap; bits behind the last marker are 0 throughout.
 
-A map is a (chromosomes, 3) array of int64: first word, words, markers. With no chromosomes (an
-empty map) all markers are unlinked. Markers lie evenly along their chromosome, its ends half a
-step away. Crossovers follow Haldane 1919: Poisson in number, even in place, no interference.
+A map is a (chromosomes, 2) array of int64: first marker, markers. With no chromosomes (an empty
+map) all markers are unlinked. Markers lie evenly along their chromosome, its ends half a step
+away. Crossovers follow Haldane 1919: Poisson in number, even in place, no interference.
 """
 
 from __future__ import annotations
@@ -15,8 +15,8 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from rescue_planner.kernels.compiled import kernel
 from rescue_planner.kernels.draws import poisson
+from rescue_planner.kernels.inner import leaf
 from rescue_planner.kernels.streams import Words, uniform, word
 
 FloatArray = NDArray[np.float64]
@@ -32,7 +32,7 @@ _SCALE = 2.0**32
 _TOP_BIT = np.uint64(63)
 
 
-@kernel
+@leaf
 def popcount(x: np.uint64) -> int:
     """Return how many bits are set."""
     x = x - ((x >> _ONE) & _PAIRS)
@@ -41,7 +41,7 @@ def popcount(x: np.uint64) -> int:
     return int(np.int64((x * _EACH) >> _TOP))
 
 
-@kernel
+@leaf
 def set_thresholds(
     frequency: FloatArray, population: int, place: IntArray, planes: Genomes
 ) -> None:
@@ -72,7 +72,7 @@ def set_thresholds(
                 planes[population, b, w] |= up << bit
 
 
-@kernel
+@leaf
 def founder_word(s: Words, k: int, planes: Genomes, population: int, w: int) -> np.uint64:
     """Return 64 alleles, each 1 with its own chance: random bits compared from the highest down.
 
@@ -91,7 +91,7 @@ def founder_word(s: Words, k: int, planes: Genomes, population: int, w: int) -> 
     return result
 
 
-@kernel
+@leaf
 def make_founder(
     s: Words, k: int, planes: Genomes, population: int, valid: Words, genome: Genomes, slot: int
 ) -> None:
@@ -107,7 +107,7 @@ def make_founder(
                 genome[slot, side, plane, w] = valid[w] if here == 1 else _ZERO
 
 
-@kernel
+@leaf
 def mix_origin(
     s: Words, k: int, ancestry: FloatArray, place: IntArray, genome: Genomes, slot: int
 ) -> None:
@@ -128,7 +128,7 @@ def mix_origin(
                     break
 
 
-@kernel
+@leaf
 def prefix_parity(x: np.uint64) -> np.uint64:
     """Return the word whose bit i is the parity of bits 0..i of `x`."""
     for step in (1, 2, 4, 8, 16, 32):
@@ -136,38 +136,59 @@ def prefix_parity(x: np.uint64) -> np.uint64:
     return x
 
 
-@kernel
-def fill_mask(s: Words, k: int, chromosomes: IntArray, morgans: FloatArray, mask: Words) -> None:
+@leaf
+def fill_mask(s: Words, k: int, chromosomes: IntArray, ends: FloatArray, mask: Words) -> None:
     """Fill a gamete's mask: a set bit takes the copy of the second haplotype.
 
-    `chromosomes` is a map (see the module), `morgans` (chromosomes,) their lengths, `mask`
-    (words,).
+    Parameters
+    ----------
+    chromosomes : (C, 2) array
+        A map (see the module); with C = 0 all markers are unlinked.
+    ends : (C,) array
+        Running sums of the chromosomes' lengths in Morgans.
+    mask : (words,) array
+        Filled.
+
+    Notes
+    -----
+    A bit is set where the strand changes, at a crossover or, with chance one half, where a
+    chromosome begins; the parity of the bits so far is the strand. Crossovers of all chromosomes
+    are drawn together: a Poisson number, each anywhere along the whole length.
     """
-    if chromosomes.shape[0] == 0:
+    count = chromosomes.shape[0]
+    if count == 0:
         for w in range(mask.size):
             mask[w] = word(s, k)
         return
-    strands, left = _ZERO, 0
-    for c in range(chromosomes.shape[0]):
-        first, words, markers = chromosomes[c, 0], chromosomes[c, 1], chromosomes[c, 2]
-        if left == 0:
-            strands, left = word(s, k), 64
-        strand = strands & _ONE
+    for w in range(mask.size):
+        mask[w] = _ZERO
+    strands = _ZERO
+    for c in range(count):
+        if c % 64 == 0:
+            strands = word(s, k)
+        first = chromosomes[c, 0]
+        mask[first // 64] ^= (strands & _ONE) << np.uint64(first % 64)
         strands >>= _ONE
-        left -= 1
-        for w in range(first, first + words):
-            mask[w] = _ZERO
-        for _ in range(poisson(s, k, morgans[c])):
-            at = int(uniform(s, k) * markers + 0.5)
-            if at < markers:
-                mask[first + at // 64] ^= _ONE << np.uint64(at % 64)
-        carry = _ALL if strand == _ONE else _ZERO
-        for w in range(first, first + words):
-            mask[w] = prefix_parity(mask[w]) ^ carry
-            carry = _ALL if (mask[w] >> _TOP_BIT) == _ONE else _ZERO
+    length = ends[count - 1]
+    for _ in range(poisson(s, k, length)):
+        x = uniform(s, k) * length
+        c = min(int(x / length * count), count - 1)
+        while c > 0 and x < ends[c - 1]:
+            c -= 1
+        while c < count - 1 and x >= ends[c]:
+            c += 1
+        start = ends[c - 1] if c > 0 else 0.0
+        at = int((x - start) / (ends[c] - start) * chromosomes[c, 1] + 0.5)
+        if at < chromosomes[c, 1]:
+            at += chromosomes[c, 0]
+            mask[at // 64] ^= _ONE << np.uint64(at % 64)
+    carry = _ZERO
+    for w in range(mask.size):
+        mask[w] = prefix_parity(mask[w]) ^ carry
+        carry = _ALL if (mask[w] >> _TOP_BIT) == _ONE else _ZERO
 
 
-@kernel
+@leaf
 def pass_on(genome: Genomes, parent: int, child: int, side: int, mask: Words) -> None:
     """Write the gamete that `mask` takes from a parent into one side of its young."""
     for plane in range(genome.shape[2]):
@@ -176,7 +197,7 @@ def pass_on(genome: Genomes, parent: int, child: int, side: int, mask: Words) ->
             genome[child, side, plane, w] = a ^ ((a ^ b) & mask[w])
 
 
-@kernel
+@leaf
 def pass_on_loci(s: Words, k: int, loci: Words, parent: int) -> np.uint64:
     """Return a gamete of the tracked loci, all unlinked; `loci` (slots, 2), one bit a locus."""
     a, b = loci[parent, 0], loci[parent, 1]
@@ -184,7 +205,7 @@ def pass_on_loci(s: Words, k: int, loci: Words, parent: int) -> np.uint64:
     return gamete
 
 
-@kernel
+@leaf
 def gene_diversity(
     genome: Genomes, who: IntArray, count: int, markers: int, counter: Words
 ) -> float:
@@ -224,7 +245,7 @@ def gene_diversity(
     return 2.0 * (copies * total - squares) / (copies * (copies - 1.0) * markers)
 
 
-@kernel
+@leaf
 def observed_heterozygosity(genome: Genomes, who: IntArray, count: int, markers: int) -> float:
     """Return the share of markers at which an animal's copies differ, mean over animals."""
     differ = 0
@@ -235,7 +256,7 @@ def observed_heterozygosity(genome: Genomes, who: IntArray, count: int, markers:
     return differ / (1.0 * count * markers)
 
 
-@kernel
+@leaf
 def copies_from(genome: Genomes, slot: int, population: int) -> int:
     """Return how many marker copies of an animal came from donor number `population` >= 1."""
     copies = 0
@@ -249,11 +270,9 @@ def copies_from(genome: Genomes, slot: int, population: int) -> int:
     return copies
 
 
-@kernel
-def present(
-    genome: Genomes, who: IntArray, count: int, valid: Words, ones: Words, zeros: Words
-) -> None:
-    """Fill which alleles the animals hold: `ones` and `zeros` (words,), a bit a marker."""
+@leaf
+def present(genome: Genomes, who: IntArray, count: int, valid: Words, seen: Words) -> None:
+    """Fill which alleles the animals hold: `seen` (2, words), alleles 0, then alleles 1."""
     for w in range(valid.size):
         has_one, has_zero = _ZERO, _ZERO
         for i in range(count):
@@ -261,10 +280,10 @@ def present(
                 bits = genome[who[i], side, 0, w]
                 has_one |= bits
                 has_zero |= ~bits
-        ones[w], zeros[w] = has_one, has_zero & valid[w]
+        seen[0, w], seen[1, w] = has_zero & valid[w], has_one
 
 
-@kernel
+@leaf
 def find_rare(
     genome: Genomes, who: IntArray, count: int, place: IntArray, least: float, rare: Words
 ) -> None:
@@ -286,11 +305,11 @@ def find_rare(
             rare[0, w] |= _ONE << bit
 
 
-@kernel
-def rare_left(rare: Words, ones: Words, zeros: Words) -> float:
+@leaf
+def rare_left(rare: Words, seen: Words) -> float:
     """Return the share of the rare alleles that are still present; NaN where none was rare."""
     were, are = 0, 0
-    for w in range(ones.size):
+    for w in range(rare.shape[1]):
         were += popcount(rare[0, w]) + popcount(rare[1, w])
-        are += popcount(rare[0, w] & zeros[w]) + popcount(rare[1, w] & ones[w])
+        are += popcount(rare[0, w] & seen[0, w]) + popcount(rare[1, w] & seen[1, w])
     return are / were if were > 0 else np.nan

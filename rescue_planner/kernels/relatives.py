@@ -11,7 +11,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from rescue_planner.kernels.compiled import kernel
+from rescue_planner.kernels.inner import leaf
 
 FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.int64]
@@ -20,7 +20,7 @@ Kinship = NDArray[np.float32]
 _HALF = np.float32(0.5)
 
 
-@kernel
+@leaf
 def seed_populations(kin: Kinship, founders: FloatArray) -> None:
     """Write the kinship among the slots that stand for populations: `founders` (P, P)."""
     for i in range(founders.shape[0]):
@@ -28,7 +28,7 @@ def seed_populations(kin: Kinship, founders: FloatArray) -> None:
             kin[i, j] = np.float32(founders[i, j])
 
 
-@kernel
+@leaf
 def add_founder(kin: Kinship, population: int, slot: int, top: int, f: float) -> None:
     """Write the row of an animal drawn from a population; slots below `top` are in use.
 
@@ -41,7 +41,7 @@ def add_founder(kin: Kinship, population: int, slot: int, top: int, f: float) ->
     kin[slot, slot] = np.float32(0.5 * (1.0 + f))
 
 
-@kernel
+@leaf
 def add_young(kin: Kinship, dam: int, sire: int, slot: int, top: int) -> None:
     """Write the row of a young of two animals: half the sum of its parents' rows.
 
@@ -55,7 +55,7 @@ def add_young(kin: Kinship, dam: int, sire: int, slot: int, top: int) -> None:
     kin[slot, slot] = _HALF * (np.float32(1.0) + f)
 
 
-@kernel
+@leaf
 def mean_kinship(kin: Kinship, who: IntArray, count: int) -> float:
     """Return the mean over pairs of different animals; NaN for fewer than two."""
     if count < 2:
@@ -69,7 +69,7 @@ def mean_kinship(kin: Kinship, who: IntArray, count: int) -> float:
     return total / (0.5 * count * (count - 1.0))
 
 
-@kernel
+@leaf
 def mean_inbreeding(kin: Kinship, who: IntArray, count: int) -> float:
     """Return the mean inbreeding coefficient of animals, at least one."""
     total = 0.0

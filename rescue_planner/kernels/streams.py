@@ -14,13 +14,14 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from rescue_planner.kernels.compiled import kernel
+from rescue_planner.kernels.inner import leaf
 
 Words = NDArray[np.uint64]
 
 FOUNDERS, SURVEY, WEATHER, DIE_OFFS, RELEASE = 0, 1, 2, 3, 4
 FLOW, BREEDING, YOUNG, GAMETES, DEATH, CROWDING = 5, 6, 7, 8, 9, 10
-PURPOSES = 11
+FIRST_YEAR = 11
+PURPOSES = 12
 """What a stream is for: the rows of a set of streams."""
 
 _LOW = np.uint64(0xFFFFFFFF)
@@ -36,7 +37,7 @@ _SHIFT_11 = np.uint64(11)
 _UNIT = 2.0**-53
 
 
-@kernel
+@leaf
 def philox(
     c0: np.uint64, c1: np.uint64, c2: np.uint64, c3: np.uint64, k0: np.uint64, k1: np.uint64
 ) -> tuple[np.uint64, np.uint64, np.uint64, np.uint64]:
@@ -55,7 +56,7 @@ def philox(
     return c0, c1, c2, c3
 
 
-@kernel
+@leaf
 def open_stream(
     s: Words, k: int, seed: np.uint64, replicate: int, year: int, population: int
 ) -> None:
@@ -80,14 +81,14 @@ def open_stream(
         s[k, 2 * block + 1] = c | (d << _HALF)
 
 
-@kernel
+@leaf
 def open_year(s: Words, seed: np.uint64, replicate: int, year: int, population: int) -> None:
     """Open the streams of all purposes for one year; arguments as in `open_stream`."""
     for k in range(s.shape[0]):
         open_stream(s, k, seed, replicate, year, population)
 
 
-@kernel
+@leaf
 def word(s: Words, k: int) -> np.uint64:
     """Return the next 64 random bits of stream `k` (xoshiro256++)."""
     s0, s1, s2, s3 = s[k, 0], s[k, 1], s[k, 2], s[k, 3]
@@ -104,13 +105,13 @@ def word(s: Words, k: int) -> np.uint64:
     return result
 
 
-@kernel
+@leaf
 def uniform(s: Words, k: int) -> float:
     """Return a number in [0, 1): a multiple of 2^-53."""
     return np.float64(word(s, k) >> _SHIFT_11) * _UNIT
 
 
-@kernel
+@leaf
 def below(s: Words, k: int, n: int) -> int:
     """Return a whole number in 0..n-1, each with the same chance; n from 1 to below 2^32.
 

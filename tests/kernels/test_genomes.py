@@ -78,7 +78,7 @@ def test_that_bits_which_stand_for_no_marker_stay_empty():
 
 def test_that_a_gamete_takes_each_copy_with_chance_one_half_and_pairs_on_their_own():
     out = np.zeros((20_000, 2), dtype=np.uint64)
-    many_masks(fresh(6), np.zeros((0, 3), dtype=np.int64), np.zeros(0), out)
+    many_masks(fresh(6), np.zeros((0, 2), dtype=np.int64), np.zeros(0), out)
     bits = unpack(out)
     se = 0.5 / np.sqrt(out.shape[0])
     assert np.all(np.abs(bits.mean(axis=0) - 0.5) < 5 * se)
@@ -97,24 +97,27 @@ def test_that_young_of_two_heterozygotes_come_in_mendels_ratio():
     assert stats.chisquare(counts, counts.sum() * np.array([0.25, 0.5, 0.25])).pvalue > 1e-4
 
 
-@pytest.mark.parametrize(("markers", "morgans"), [(40, 1.0), (64, 0.5), (150, 2.0), (1, 1.0)])
+@pytest.mark.parametrize(
+    ("markers", "morgans"), [(40, 1.0), (64, 0.5), (150, 2.0), (1, 1.0), (7, 20.0)]
+)
 def test_that_recombination_follows_haldanes_map(markers, morgans):
-    words = (markers + 63) // 64
-    chromosomes = np.array([[0, words, markers]] * 2, dtype=np.int64)
-    chromosomes[1, 0] = words
-    out = np.zeros((20_000, 2 * words), dtype=np.uint64)
-    many_masks(fresh(8), chromosomes, np.array([morgans, morgans]), out)
+    chromosomes = np.array([[0, markers], [markers, markers], [2 * markers, 3]], dtype=np.int64)
+    words = (2 * markers + 3 + 63) // 64
+    out = np.zeros((20_000, words), dtype=np.uint64)
+    ends = np.array([morgans, 2 * morgans, 2 * morgans + 0.7])
+    many_masks(fresh(8), chromosomes, ends, out)
     bits = unpack(out)
-    one, two = bits[:, :markers], bits[:, 64 * words : 64 * words + markers]
     runs = out.shape[0]
-    for apart in {1, markers // 3, markers - 1} - {0}:
-        expected = 0.5 * (1 - np.exp(-2 * morgans * apart / markers))
-        pairs = [(i, i + apart) for i in range(0, markers - apart, max(1, markers // 7))]
-        for i, j in pairs:
-            seen = (one[:, i] != one[:, j]).mean()
-            assert abs(seen - expected) < 5 * np.sqrt(expected * (1 - expected) / runs)
-    assert abs((one[:, -1] != two[:, 0]).mean() - 0.5) < 5 * 0.5 / np.sqrt(runs)
-    assert np.all(np.abs(bits[:, :markers].mean(axis=0) - 0.5) < 5 * 0.5 / np.sqrt(runs))
+    for first, count, length in ((0, markers, morgans), (2 * markers, 3, 0.7)):
+        for apart in {1, count // 3, count - 1} - {0, count}:
+            expected = 0.5 * (1 - np.exp(-2 * length * apart / count))
+            for i in range(first, first + count - apart, max(1, count // 7)):
+                seen = (bits[:, i] != bits[:, i + apart]).mean()
+                assert abs(seen - expected) < 5 * np.sqrt(expected * (1 - expected) / runs)
+    for border in (markers, 2 * markers):
+        assert abs((bits[:, border - 1] != bits[:, border]).mean() - 0.5) < 5 * 0.5 / np.sqrt(runs)
+    used = bits[:, : 2 * markers + 3]
+    assert np.all(np.abs(used.mean(axis=0) - 0.5) < 5 * 0.5 / np.sqrt(runs))
 
 
 def test_that_a_gamete_equals_a_plain_choice_between_the_copies():
@@ -166,12 +169,10 @@ def test_that_rare_alleles_are_found_and_followed_on_both_sides():
     ones = alleles.sum(axis=0)
     assert np.array_equal(unpack(rare[1])[:130], (ones > 0) & (ones < 2.5))
     assert np.array_equal(unpack(rare[0])[:130], (ones < 50) & (ones > 47.5))
-    has_one, has_zero = np.zeros_like(valid), np.zeros_like(valid)
-    genomes.present(genome, who, 10, valid, has_one, has_zero)
+    seen = np.zeros_like(rare)
+    genomes.present(genome, who, 10, valid, seen)
     left = alleles[:20]
     plain = (unpack(rare[1])[:130] & left.any(axis=0)) + (
         unpack(rare[0])[:130] & (left == 0).any(0)
     )
-    assert_allclose(
-        genomes.rare_left(rare, has_one, has_zero), plain.sum() / unpack(rare).sum(), rtol=1e-12
-    )
+    assert_allclose(genomes.rare_left(rare, seen), plain.sum() / unpack(rare).sum(), rtol=1e-12)
