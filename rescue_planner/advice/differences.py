@@ -72,10 +72,12 @@ def difference_table(
         ),
     ]
     rows = tuple(_row(comparison, (one, other), key, at) for key in keys)
-    words = (
+    words: tuple[str, ...] = (
         f"{letters[0]} − {letters[1]}: the value of {letters[0]} {one} less that of {letters[1]} "
         f"{other}, in the unit of the measure; percentages differ by percentage points.",
     )
+    if any(cell == "gone" for row in rows for cell in row):
+        words += ("Gone: under one of the two plans fewer than one adult is left by then.",)
     header = ("Measure, unit", *(wrapped(head, NARROW) for head in heads))
     return ValueTable(header, 1, rows, words)
 

@@ -81,6 +81,16 @@ def axis_title(comparison: Comparison, table: Consequences, key: str) -> str:
     return f"{title(key)}, {comparison.unit(key)} ({way})"
 
 
+def trade_caption(
+    comparison: Comparison, table: Consequences, x: str, y: str, size: str | None = None
+) -> str:
+    """Return what the chart shows, in one line: case, measures, year, area."""
+    words = f"{title(y)} against {title(x)} in {reading.year_text(table.year)}"
+    if size is not None and sizeable(table, size):
+        words += f"; area of a mark: {title(size)}, {comparison.unit(size)}"
+    return f"{comparison.title}: {words}"
+
+
 def trade_words(
     comparison: Comparison, table: Consequences, x: str, y: str, size: str | None = None
 ) -> tuple[str, ...]:

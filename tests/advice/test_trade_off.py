@@ -10,6 +10,7 @@ from rescue_planner.advice.consequences import Consequence, Consequences, conseq
 from rescue_planner.advice.trade_off import (
     axis_title,
     sizeable,
+    trade_caption,
     trade_points,
     trade_range,
     trade_words,
@@ -92,3 +93,11 @@ def test_that_an_axis_holds_its_values_and_does_not_begin_below_nought_for_nothi
     assert low < high
     if min(values) > 0:
         assert low >= 0
+
+
+def test_that_the_caption_says_case_measures_year_and_area(comparison, table):
+    words = trade_caption(comparison, table, "cost", "gene_diversity_kept", "adults")
+    assert words == (
+        f"{CASE.title}: Gene diversity kept against Cost in 2043; area of a mark: Adults, animals"
+    )
+    assert trade_caption(comparison, table, "cost", "gene_diversity_kept").endswith("in 2043")

@@ -1,10 +1,12 @@
 """The sections under the charts of the Compare page with a real document."""
 
 import json
+import math
 from pathlib import Path
 
 import pytest
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QPointF, Qt
+from PySide6.QtGui import QGuiApplication
 
 from rescue_planner.advice.consequence_words import consequence_table
 from rescue_planner.advice.consequences import consequences
@@ -12,8 +14,10 @@ from rescue_planner.advice.differences import difference, difference_table
 from rescue_planner.advice.reasons import why_table
 from rescue_planner.case.edits import set_value
 from rescue_planner.case.problems import read_case
-from rescue_planner.desk.compare.trade import LARGEST, LEAST, USUAL, radius
+from rescue_planner.desk.compare.trade import LARGEST, LEAST, USUAL, even, radius
 from rescue_planner.desk.pages.compare import ComparePage
+from rescue_planner.desk.plan_mark import marker_path
+from rescue_planner.projection.marks import MARKERS
 from rescue_planner.projection.why import why
 
 MARSH = Path(__file__).parents[1] / "projection" / "marsh.json"
@@ -121,6 +125,34 @@ def test_that_a_third_measure_is_the_area_of_the_marks(page, table):
         assert radius(point) ** 2 == pytest.approx(max(wanted, LEAST**2))
     assert "Area of a mark: Adults, animals" in trade.words.text()
     assert trade.chart.accessibleDescription().split() == trade.words.text().split()
+
+
+@pytest.mark.parametrize("marker", MARKERS)
+def test_that_all_kinds_of_marks_have_the_same_area(marker):
+    """Counted on a grid of points, apart from the formula."""
+    path = marker_path(marker, QPointF(0, 0), 10 * even(marker))
+    grid = [k / 4 for k in range(-80, 81)]
+    inside = sum(path.contains(QPointF(x, y)) for x in grid for y in grid)
+    assert inside / 16 == pytest.approx(math.pi * 100, rel=0.04)  # cells along the outline
+
+
+def test_that_charts_are_copied_as_pictures_on_their_own_ground(qtbot, page):
+    trade, against = page.sections.trade_off, page.sections.against
+    qtbot.waitUntil(lambda: against.picture.height() > against.chart.height() > 100)
+    for click, chart in (
+        (trade.copy_button.click, trade.picture),
+        (against.picture_button.click, against.picture),
+    ):
+        QGuiApplication.clipboard().clear()
+        click()
+        picture = QGuiApplication.clipboard().image()
+        assert (picture.width(), picture.height()) == (2 * chart.width(), 2 * chart.height())
+        corner = picture.pixelColor(picture.width() - 1, picture.height() // 2)
+        assert corner.name() == page.averages.look().colours.paper
+        colours = {
+            picture.pixel(x, y) for x in range(0, picture.width(), 7) for y in range(60, 300)
+        }
+        assert len(colours) > 3
 
 
 def test_that_two_plans_are_told_apart_and_swapping_mirrors_the_table(page, desk):

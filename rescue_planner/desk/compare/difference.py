@@ -15,7 +15,7 @@ from rescue_planner.advice.differences import (
 from rescue_planner.advice.trade_off import trade_range
 from rescue_planner.case.measures import title
 from rescue_planner.desk import theme
-from rescue_planner.desk.compare.fold import Choice, Seen
+from rescue_planner.desk.compare.fold import Choice, Seen, copy_picture, framed
 from rescue_planner.desk.compare.frame import AxisPicture, Frame, value_axis
 from rescue_planner.desk.compare.values import EMPTY, CopyingTable, ValueModel
 from rescue_planner.desk.flow import FlowLayout
@@ -86,13 +86,16 @@ class PlanAgainstPlan(QWidget):
         self.table = CopyingTable("Differences of two plans", self)
         self.table.setModel(self.model)
         self.notes = text("", "note")
+        self.picture_button = button("Copy picture", said="Copy the chart of the difference")
         self.drawn = text("", "small")
         self.chart = DifferenceChart(self)
+        self.picture = framed(self.drawn, self.chart)
         self._lay_out()
         for choice in (self.one, self.other, self.measure):
             choice.currentIndexChanged.connect(self._rebuild)
         self.swap_button.clicked.connect(self.swap)
         self.copy_button.clicked.connect(self.table.copy)
+        self.picture_button.clicked.connect(self.copy_picture)
 
     def _lay_out(self) -> None:
         top, below = FlowLayout(), FlowLayout()
@@ -101,6 +104,7 @@ class PlanAgainstPlan(QWidget):
         top.addWidget(self.swap_button)
         top.addWidget(self.copy_button)
         below.addWidget(self.measure.pair)
+        below.addWidget(self.picture_button)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(theme.HALF)
@@ -108,14 +112,19 @@ class PlanAgainstPlan(QWidget):
         layout.addWidget(self.table)
         layout.addWidget(self.notes)
         layout.addLayout(below)
-        layout.addWidget(self.drawn)
-        layout.addWidget(self.chart)
+        layout.addWidget(self.picture)
 
     def stops(self) -> tuple[QWidget, ...]:
         """Return what Tab stops at, in order."""
         return (
             self.one, self.other, self.swap_button, self.copy_button, self.table, self.measure,
+            self.picture_button,
         )  # fmt: skip
+
+    def copy_picture(self) -> None:
+        """Put the chart on the clipboard."""
+        if self._seen is not None:
+            copy_picture(self.picture, self._seen.look.colours.paper)
 
     def swap(self) -> None:
         """Let the two plans change places."""
@@ -137,7 +146,7 @@ class PlanAgainstPlan(QWidget):
         seen = self._seen
         one, other = self.one.currentData(), self.other.currentData()
         there = seen is not None and one is not None and other is not None
-        for part in (self.table, self.notes, self.chart, self.drawn):
+        for part in (self.table, self.notes, self.picture):
             part.setVisible(there)
         if seen is None or not there:
             self.model.show_table(EMPTY)
@@ -151,8 +160,8 @@ class PlanAgainstPlan(QWidget):
         key = self.measure.currentData()
         found = None if key is None else difference(seen.comparison, one, other, key)
         drawn = found is not None and found.values.size > 1
-        self.chart.setVisible(drawn)
-        self.drawn.setVisible(drawn)
+        self.picture.setVisible(drawn)
+        self.picture_button.setEnabled(drawn)
         if found is not None:
             words = (
                 f"{title(key)}: {seen.named(one)} less {seen.named(other)}, "

@@ -5,8 +5,9 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from PySide6.QtCore import QSignalBlocker
-from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QSizePolicy, QWidget
+from PySide6.QtCore import QPoint, QSignalBlocker
+from PySide6.QtGui import QColor, QGuiApplication, QPixmap, QRegion
+from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
 
 from rescue_planner.case.document import Case
 from rescue_planner.desk import theme
@@ -46,6 +47,26 @@ class Seen:
     def named(self, plan: str) -> str:
         """Return a plan's letter and name."""
         return f"{reading.letter(self.comparison, plan)} {plan}"
+
+
+def framed(caption: QWidget, chart: QWidget) -> QWidget:
+    """Return a chart under its caption, as one thing that can be copied."""
+    both = QWidget()
+    column = QVBoxLayout(both)
+    column.setContentsMargins(0, 0, 0, 0)
+    column.setSpacing(theme.HALF)
+    column.addWidget(caption)
+    column.addWidget(chart)
+    return both
+
+
+def copy_picture(chart: QWidget, ground: str) -> None:
+    """Put a chart on the clipboard as a picture, twice as fine as on the screen."""
+    picture = QPixmap(chart.size() * 2)
+    picture.setDevicePixelRatio(2.0)
+    picture.fill(QColor(ground))
+    chart.render(picture, QPoint(), QRegion(), QWidget.RenderFlag.DrawChildren)
+    QGuiApplication.clipboard().setPixmap(picture)
 
 
 class Choice(QComboBox):

@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import math
+from functools import cache
+from itertools import pairwise
 
 from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QColor, QFontMetricsF, QPainter, QPaintEvent, QPen
@@ -13,17 +15,18 @@ from rescue_planner.advice.trade_off import (
     TradePoint,
     axis_title,
     sizeable,
+    trade_caption,
     trade_points,
     trade_range,
     trade_words,
 )
 from rescue_planner.case.measures import title
 from rescue_planner.desk import theme
-from rescue_planner.desk.compare.fold import Choice, Seen
+from rescue_planner.desk.compare.fold import Choice, Seen, copy_picture, framed
 from rescue_planner.desk.compare.frame import Frame, value_axis
 from rescue_planner.desk.flow import FlowLayout
 from rescue_planner.desk.plan_mark import marker_path
-from rescue_planner.desk.widgets import text
+from rescue_planner.desk.widgets import button, text
 from rescue_planner.projection.marks import mark
 from rescue_planner.projection.placing import Box, quietest
 
@@ -37,6 +40,15 @@ FIRST_UP = ("gene_diversity_kept", "adults")
 def radius(point: TradePoint) -> float:
     """Return the radius of a mark: its area is in proportion, and 0 still leaves a dot."""
     return USUAL if point.area is None else max(LEAST, LARGEST * math.sqrt(point.area))
+
+
+@cache
+def even(marker: str) -> float:
+    """Return by how much a marker's radius is multiplied so that all kinds have a circle's area."""
+    outline = marker_path(marker, QPointF(0.0, 0.0), 100.0).toFillPolygon()
+    corners = [(one.x(), one.y()) for one in outline.toList()]
+    twice = sum(x * v - u * y for (x, y), (u, v) in pairwise(corners))  # the shoelace formula
+    return math.sqrt(math.pi * 100.0**2 / (abs(twice) / 2.0))
 
 
 class TradeChart(QWidget):
@@ -94,7 +106,8 @@ class TradeChart(QWidget):
         ground.setAlpha(110)  # a mark under another one still shows
         painter.setBrush(ground)
         painter.setPen(QPen(look.plan_colour(place), 1.4))
-        painter.drawPath(marker_path(mark(place).marker, at, radius(point)))
+        marker = mark(place).marker
+        painter.drawPath(marker_path(marker, at, radius(point) * even(marker)))
 
     def _paint_names(self, painter: QPainter, frame: Frame) -> None:
         assert self._seen is not None
@@ -142,21 +155,31 @@ class TradeOff(QWidget):
         self.up = Choice("Up", "Measure of the trade-off chart, upwards", self)
         self.size_of = Choice("Area of a mark", "Measure shown by the area of the marks", self)
         self.chart = TradeChart(self)
+        self.caption = text("", "small")
+        self.picture = framed(self.caption, self.chart)
         self.words = text("", "note")
         top = FlowLayout()
         for choice in (self.across, self.up, self.size_of):
             top.addWidget(choice.pair)
             choice.currentIndexChanged.connect(self._rebuild)
+        self.copy_button = button("Copy picture", said="Copy the trade-off chart as a picture")
+        self.copy_button.clicked.connect(self.copy)
+        top.addWidget(self.copy_button)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(theme.UNIT)
         layout.addLayout(top)
-        layout.addWidget(self.chart)
+        layout.addWidget(self.picture)
         layout.addWidget(self.words)
 
     def stops(self) -> tuple[QWidget, ...]:
         """Return what Tab stops at, in order."""
-        return (self.across, self.up, self.size_of)
+        return (self.across, self.up, self.size_of, self.copy_button)
+
+    def copy(self) -> None:
+        """Put the chart on the clipboard."""
+        if self._seen is not None:
+            copy_picture(self.picture, self._seen.look.colours.paper)
 
     def show_table(self, seen: Seen | None, table: Consequences | None) -> None:
         """Show the plans of a consequence table."""
@@ -172,7 +195,7 @@ class TradeOff(QWidget):
         seen, table = self._seen, self._table
         x, y = self.across.currentData(), self.up.currentData()
         shown = seen is not None and table is not None and x is not None and y is not None
-        self.chart.setVisible(shown)
+        self.picture.setVisible(shown)
         self.words.setVisible(shown)
         if seen is None or table is None or not shown:
             return
@@ -182,7 +205,9 @@ class TradeOff(QWidget):
         words = trade_words(seen.comparison, table, x, y, size)
         self.words.setText("\n".join(words))
         self.chart.setAccessibleDescription(" ".join(words))
-        self.chart.setVisible(bool(self.chart.points))
+        self.caption.setText(trade_caption(seen.comparison, table, x, y, size))
+        self.picture.setVisible(bool(self.chart.points))
+        self.copy_button.setEnabled(bool(self.chart.points))
 
 
 def _first(table: Consequences, wanted: tuple[str, ...], otherwise: int) -> int:
