@@ -34,13 +34,17 @@ NOT_UNLIMITED = (
 
 @dataclass(frozen=True, slots=True)
 class Ask:
-    """One thing a way asks: a number, or one of `choices` (value, words); no answer is preset."""
+    """One thing a way asks: a number, one of `choices` (value, words), or free `text`.
+
+    No choice is preset.
+    """
 
     key: str
     words: str
     unit: str = ""
     choices: tuple[tuple[str, str], ...] = ()
     needed: bool = True
+    text: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -200,11 +204,10 @@ def _lethals(_case: Case, _path: str, answers: Answers) -> Worked:
     printed = {part: _number(answers, part) for part in ("best", "low", "high") if part in answers}
     value = {part: _r12(number * times) for part, number in printed.items()}
     both = f"{value['best'] / 2:g} haploid = {value['best']:g} diploid lethal equivalents"
-    known = str(answers.get("source") or "source not stated")
     at = [100 * float(survival_factor(f, value["best"])) for f in (0.125, 0.25)]
     return Worked(
         Quantity.model_validate(
-            {**value, "origin": "borrowed", "source": f"{known}; {both}; covers {span}"}
+            {**value, "origin": "borrowed", "source": f"{_source(answers)}; {both}; covers {span}"}
         ),
         f"{both}, covering {span}: at F = 0.125 survival is {at[0]:.1f} %, at F = 0.25 "
         f"{at[1]:.1f} % of outbred. Does this look right?{_WHOLE[str(answers['span'])]}",
@@ -220,9 +223,19 @@ def _counted(_case: Case, _path: str, answers: Answers) -> Worked:
     sum_ = f"{k:g} of {n:g} = {best:g} ({low:g} to {high:g})"
     origin = "measured" if answers["where"] == "here" else "borrowed"
     return Worked(
-        Quantity(best=best, low=low, high=high, origin=origin, source=f"{sum_}; {WILSON}"),
+        Quantity(
+            best=best,
+            low=low,
+            high=high,
+            origin=origin,
+            source=f"{_source(answers)}; {sum_}; {WILSON}",
+        ),
         f"{sum_}: {WILSON}.",
     )
+
+
+def _source(answers: Answers) -> str:
+    return str(answers.get("source") or "source not stated")
 
 
 def _not_stated(_case: Case, _path: str, _answers: Answers) -> Worked:
@@ -256,6 +269,7 @@ SPANS = (
 )
 _LATER = " The program lets all of it act in the first year."
 _WHOLE = {"year": "", "maturity": _LATER, "life": f"{_LATER} Leave young per female at 0 then."}
+_PRINTED_IN = Ask("source", "Source: author, year, journal or report", needed=False, text=True)
 _ISOLATED = Ask("years", "How long has it been isolated?", "years")
 _BREEDERS = Way(
     "breeders",
@@ -277,6 +291,7 @@ _PRINTED = Way(
         Ask("span", "Which part of life does it cover?", "", SPANS),
         Ask("low", "Low end, if printed", "lethal equivalents", needed=False),
         Ask("high", "High end, if printed", "lethal equivalents", needed=False),
+        _PRINTED_IN,
     ),
     _lethals,
 )  # fmt: skip
@@ -288,6 +303,7 @@ _COUNTED = Way(
         Ask("bred", "Of these, lived to breed", "animals"),
         Ask("where", "Where was it?", "",
             (("here", "here, by this office"), ("elsewhere", "another place or species"))),
+        _PRINTED_IN,
     ),
     _counted,
 )  # fmt: skip

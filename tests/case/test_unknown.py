@@ -141,6 +141,7 @@ def test_that_so_many_of_so_many_have_wilsons_interval(case) -> None:
     # 12 of 28: 0.2651 to 0.6093 by Wilson's formula, statsmodels proportion_confint "wilson"
     assert (found.best, found.low, found.high) == (0.429, 0.265, 0.609)
     assert found.origin == "borrowed"
+    assert found.source.startswith("source not stated; 12 of 28 = 0.429")
     here = _worked(case, SURVIVE, "counted", released=28.0, bred=12.0, where="here")
     held = entered(case, SURVIVE, here).case.plans[1].releases[0].afterwards.survive_to_breed
     assert held.origin == "measured"

@@ -89,9 +89,11 @@ def test_that_lethal_equivalents_ask_for_convention_and_span_with_nothing_preset
     assert "4 haploid = 8 diploid" in form.said.text()
     assert "covering survival through the first year" in form.said.text()
     assert f"{100 * survival_factor(0.25, 8):.1f}\u00a0%" in form.said.text()
+    _type(qtbot, form, source="Report 12")
     _press(qtbot, form.use)
     held = window.desk.document.case.inbreeding_cost.lethal_equivalents_diploid.first_year
     assert held.best == 8
+    assert held.source.startswith("Report 12; 4 haploid = 8 diploid")
     assert "covers survival through the first year" in held.source
 
 

@@ -89,6 +89,9 @@ class WayForm(QWidget):
             made.setMinimumWidth(theme.UNIT * 12)
             made.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
             made.currentIndexChanged.connect(self._changed)
+        elif ask.text:
+            made = QLineEdit()
+            made.textChanged.connect(self._changed)
         else:
             made = _Number(written(held) if held is not None else "")
             made.textChanged.connect(self._changed)
@@ -97,7 +100,7 @@ class WayForm(QWidget):
         self.answers[ask.key] = made
         label = QLabel(ask.words)
         label.setBuddy(made)
-        return FieldRow(label, _beside(made, text(ask.unit, "unit")))
+        return FieldRow(label, made if ask.text else _beside(made, text(ask.unit, "unit")))
 
     def _changed(self, _what: object = None) -> None:
         self.refresh(self._desk.document.case)
@@ -117,7 +120,7 @@ class WayForm(QWidget):
                 if widget.currentIndex() > 0:
                     given[ask.key] = ask.choices[widget.currentIndex() - 1][0]
             elif typed := widget.text().strip():
-                given[ask.key] = float(read_number(typed))
+                given[ask.key] = typed if ask.text else float(read_number(typed))
         return given
 
     def refresh(self, case: Case) -> None:
