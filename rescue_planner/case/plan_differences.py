@@ -13,6 +13,7 @@ from typing import Any
 from rescue_planner.case import fields
 from rescue_planner.case.base import Part
 from rescue_planner.case.document import Case
+from rescue_planner.case.measures import title
 from rescue_planner.case.paths import Path, format_path
 from rescue_planner.case.plans import OtherAction, Plan, Release, Rule, Steady
 from rescue_planner.case.quantity import Quantity
@@ -95,6 +96,8 @@ class _Walk:
         name = f"{said}{lowered(name)}" if said else name
         if _value(one) == _value(two):  # the same number, otherwise known
             return f"{name}: {_value(one)} is {_known(one)} instead of {_known(two)}."
+        if isinstance(one, str) and path[-1] == "when":
+            return f"{name}: {_measure(one)} instead of {_measure(two)}."
         unit = "" if definition is None else definition.unit
         unit = unit.replace("currency", self.case.currency or "units of money")
         unit = "" if unit in _UNSAID else f" ({unit})"
@@ -105,6 +108,10 @@ def _value(held: Any) -> str:  # noqa: ANN401 - whatever a plan may hold
     if held is None:
         return "left out"
     return "a release" if isinstance(held, Part) else spoken_value(held)
+
+
+def _measure(key: str) -> str:
+    return lowered(title(key))
 
 
 def _known(held: Any) -> str:  # noqa: ANN401 - a quantity, or nothing
@@ -142,7 +149,9 @@ def _told(part: Part) -> str:
             if bound is not None
         ]
         then = "stop all releases" if part.then == "stop" else "make a release"
-        return f"{then} when {part.when} is {' or '.join(bounds) or 'beyond no bound yet'}"
+        return (
+            f"{then} when {_measure(part.when)} is {' or '.join(bounds) or 'beyond no bound yet'}"
+        )
     if isinstance(part, OtherAction):
         return f"{part.what}, from {part.year.best:g}"
     return "a part"

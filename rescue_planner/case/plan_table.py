@@ -16,6 +16,7 @@ from types import MappingProxyType
 from rescue_planner.case.document import Case
 from rescue_planner.case.edits.plans import RELEASE
 from rescue_planner.case.fields import definition_at
+from rescue_planner.case.paths import parse_path
 from rescue_planner.case.plans import Release
 from rescue_planner.case.quantity import Quantity
 
@@ -161,3 +162,13 @@ def held_sentences(sheet: Sheet, releases: int) -> tuple[tuple[Cell, str], ...]:
 def place_words(cell: Cell) -> str:
     """Return where a cell stands, as in `Row 3, Females`."""
     return f"Row {cell[0] + 1}, {COLUMNS[cell[1]].title}"
+
+
+def cell_at(path: str) -> Cell | None:
+    """Return the cell of the table that shows what stands at a path of the case, or nothing."""
+    steps = parse_path(path)
+    if len(steps) < 5 or steps[0] != "plans" or steps[2] != "releases":
+        return None
+    row, inner = steps[3], steps[4:]
+    column = next((c for c, one in enumerate(COLUMNS) if inner == one.path), None)
+    return (row, column) if isinstance(row, int) and column is not None else None

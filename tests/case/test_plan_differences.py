@@ -84,7 +84,7 @@ def test_that_flow_rules_actions_and_size_are_compared():
     assert said(case) == [
         "Effective size (Ne) under this plan: 20 instead of left out (animals per generation).",
         "Steady flow 1 is only here: 2 newcomers that breed per generation from “Upper Fen”.",
-        "Rule “ceiling” is only here: stop all releases when donor_ancestry is above 0.3.",
+        "Rule “ceiling” is only here: stop all releases when donor ancestry is above 0.3.",
         "Other action 1 is only here: ditches, from 2030.",
     ]
 
@@ -95,6 +95,15 @@ def test_that_a_release_of_a_rule_is_looked_into():
     case = set_value(case, f"plans[{at}].rules[1].release.who.females", 2).case
     (only,) = said(case, "Copy", case.plans[at - 1].name)
     assert only == "Rule “second wave”, its release, females: 2 instead of 0 (animals)."
+
+
+def test_that_the_measure_of_a_rule_is_named_as_on_the_screen():
+    case = duplicate_plan(read_case(full()), read_case(full()).plans[-1].name, "Copy").case
+    at = next(i for i, plan in enumerate(case.plans) if plan.name == "Copy")
+    case = set_value(case, f"plans[{at}].rules[0].when", "inbreeding").case
+    assert said(case, "Copy", case.plans[at - 1].name) == [
+        "Rule “ancestry ceiling”, measure read: inbreeding F instead of donor ancestry: Upper Fen."
+    ]
 
 
 def test_that_an_unknown_plan_is_a_key_error():

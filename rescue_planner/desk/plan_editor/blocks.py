@@ -80,8 +80,10 @@ class ReleaseBlock(Block):
         """Say what the release comes to."""
         release = plan.releases[self.index]
         first = float(release.when.first_year.best)
+        whole = plan_reading.fate(release, self.index)
+        in_all = f"{whole.sentence()}. " if whole.events > 1 else ""
         self.show_words(
-            f"{plan_reading.chain(release).sentence()}, each time. "
+            f"{plan_reading.chain(release).sentence()}, each time. {in_all}"
             f"{plan_reading.generation_sentence(case, first)}"
         )
 
