@@ -219,14 +219,32 @@ def keep(entry: Published) -> None:
     LibraryError
         When the file cannot be read or written; what it held is whole.
     """
+    _write([*_others(entry.key), entry])
+
+
+def forget(key: str) -> None:
+    """Take an entry out of the user's own values.
+
+    Raises
+    ------
+    LibraryError
+        When the file cannot be read or written; what it held is whole.
+    """
+    _write(_others(key))
+
+
+def _others(key: str) -> list[Published]:
     held = library()
     if held.complaint:
         raise LibraryError(held.complaint)
-    kept = [one for one in held.own if one.key != entry.key] + [entry]
+    return [one for one in held.own if one.key != key]
+
+
+def _write(entries: list[Published]) -> None:
     raw = {
         "format": FORMAT,
         "version": VERSION,
-        "entries": [one.model_dump(mode="json", exclude_none=True) for one in kept],
+        "entries": [one.model_dump(mode="json", exclude_none=True) for one in entries],
     }
     path = own_file()
     beside = path.with_name(path.name + ".new")

@@ -103,6 +103,14 @@ def inbreeding_cost_in_words(case: Case) -> str:
     return words + " Does this look right?"
 
 
+def lethal_source_in_words(case: Case) -> str:
+    """Return where the first-year lethal equivalents are from, with the part of life covered."""
+    if case.inbreeding_cost is None:
+        return ""
+    held = lethal_equivalents(case).first_year
+    return f"{(held.origin or 'not stated').capitalize()}; source: {held.source or 'not stated'}."
+
+
 def generations_in_words(case: Case) -> str:
     """Return the horizon in generations."""
     count = float(case.time.horizon_years.best) / float(case.time.generation_years.best)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+from pathlib import Path
 
 import pytest
 
@@ -23,6 +24,7 @@ from rescue_planner.case.library import (
     Published,
     borrow,
     entry_from,
+    forget,
     keep,
     library,
     own_file,
@@ -138,6 +140,21 @@ def test_that_an_own_value_stands_first_and_is_there_the_next_time() -> None:
     found = library()
     assert [one.best for one in found.own] == [6]
     assert found.fitting(FIRST_YEAR)[0].key == "mine"
+    keep(_own(key="another"))
+    forget("mine")
+    assert [one.key for one in library().own] == ["another"]
+
+
+def test_that_a_disk_that_refuses_is_said_and_the_own_values_stay(monkeypatch) -> None:
+    keep(_own())
+
+    def refuse(*_args):
+        raise OSError(28, "No space left on device")
+
+    monkeypatch.setattr(Path, "replace", refuse)
+    with pytest.raises(LibraryError, match="No space left"):
+        keep(_own(best=6))
+    assert [one.best for one in library().own] == [5]
 
 
 def test_that_an_own_file_of_an_earlier_program_is_still_read() -> None:

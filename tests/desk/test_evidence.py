@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from rescue_planner import places
 from rescue_planner.annex.inputs import input_rows
-from rescue_planner.case.edits import set_value
+from rescue_planner.case.edits import set_source, set_value
 from rescue_planner.case.file import load
 from rescue_planner.case.paths import parse_path
 from rescue_planner.desk.evidence import (
@@ -13,6 +13,7 @@ from rescue_planner.desk.evidence import (
     evidence,
     generations_in_words,
     inbreeding_cost_in_words,
+    lethal_source_in_words,
     ratio_in_words,
     screen_cautions,
     screen_class,
@@ -62,6 +63,16 @@ def test_that_seven_diploid_are_three_and_a_half_haploid(small) -> None:
     assert inbreeding_cost_in_words(small).startswith(
         "7 diploid (3.5 haploid) in the first year: young of half sibs (F = 0.125) survive 65 %, "
         "of full sibs (F = 0.25) 42 % as well as outbred young."
+    )
+
+
+def test_that_the_source_of_lethal_equivalents_is_echoed(small) -> None:
+    assert lethal_source_in_words(small) == "Not stated; source: not stated."
+    path = "inbreeding_cost.lethal_equivalents_diploid.first_year"
+    about = {"origin": "borrowed", "source": "Report 12; covers survival to maturity"}
+    stated = set_source(small, path, **about).case
+    assert lethal_source_in_words(stated) == (
+        "Borrowed; source: Report 12; covers survival to maturity."
     )
 
 

@@ -125,6 +125,8 @@ def test_that_a_value_with_its_source_is_kept_among_the_users_own(qtbot, window)
     document.apply(set_source(document.case, "recipient.gene_diversity", source="report 3"))
     _press(qtbot, at_hand.published.keep)
     assert any("0.42" in one.accessibleName() for one in at_hand.published.uses)
+    _press(qtbot, at_hand.published.removes[0])
+    assert not any("0.42" in one.accessibleName() for one in at_hand.published.uses)
 
 
 def test_that_the_explainer_offers_the_same_for_the_number_with_the_focus(qtbot, window) -> None:

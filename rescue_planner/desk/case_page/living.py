@@ -6,7 +6,7 @@ from rescue_planner.case.document import Case
 from rescue_planner.case.edits import Edit, set_value
 from rescue_planner.case.paths import format_path
 from rescue_planner.desk.case_page.section import Section, SectionPlan
-from rescue_planner.desk.evidence import inbreeding_cost_in_words
+from rescue_planner.desk.evidence import inbreeding_cost_in_words, lethal_source_in_words
 
 MEASURED = (("here_now", "here and now, inbreeding and all"),
             ("unrelated_parents", "on young of unrelated parents"))  # fmt: skip
@@ -104,6 +104,7 @@ def _cost(section: Section, _case: Case) -> None:
     section.ways(f"{at}.first_year")
     section.number(f"{at}.young_per_female", "Young per female, diploid")
     section.line(inbreeding_cost_in_words, "")
+    section.line(lethal_source_in_words)
     section.choice("inbreeding_cost.how", "How it acts", HOW)
 
 

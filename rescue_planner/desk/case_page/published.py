@@ -12,6 +12,7 @@ from rescue_planner.case.library import (
     Published,
     borrow,
     entry_from,
+    forget,
     keep,
     library,
 )
@@ -28,6 +29,7 @@ class PublishedList(QWidget):
         super().__init__()
         self._desk, self.path = desk, path
         self.uses: list[Link] = []
+        self.removes: list[Link] = []
         self.problem = text("", "problem")
         self.problem.hide()
         self._column = QVBoxLayout(self)
@@ -43,7 +45,7 @@ class PublishedList(QWidget):
         if not entries:
             self._column.addWidget(text("None is held for this input.", "soft"))
         for entry in entries:
-            self._column.addWidget(self._entry(entry))
+            self._column.addWidget(self._entry(entry, own=entry in held.own))
         if held.complaint:
             self._say(held.complaint)
         self.keep = Link("Keep the value entered here among mine")
@@ -52,7 +54,7 @@ class PublishedList(QWidget):
         self._column.addWidget(self.keep)
         self._column.addWidget(self.problem)
 
-    def _entry(self, entry: Published) -> QWidget:
+    def _entry(self, entry: Published, *, own: bool) -> QWidget:
         made = QWidget()
         column = QVBoxLayout(made)
         column.setContentsMargins(0, 0, 0, theme.HALF)
@@ -70,7 +72,22 @@ class PublishedList(QWidget):
             use.clicked.connect(partial(self._use, entry))
             self.uses.append(use)
             column.addWidget(use)
+        if own:
+            gone = Link("Remove from mine")
+            gone.setAccessibleName(f"Remove from my published values: {entry.value_words}")
+            gone.clicked.connect(partial(self._forget, entry))
+            column.addWidget(gone)
+            self.removes.append(gone)
         return made
+
+    def _forget(self, entry: Published, _clicked: bool = False) -> None:
+        try:
+            forget(entry.key)
+        except LibraryError as wrong:
+            self._say(str(wrong))
+        else:
+            self._say("")
+            self._again()
 
     def _use(self, entry: Published, _clicked: bool = False) -> None:
         problems = self._desk.document.try_edit(lambda case: borrow(case, self.path, entry))
@@ -90,6 +107,7 @@ class PublishedList(QWidget):
     def _again(self) -> None:
         """Show the list anew, with what was kept."""
         self.uses.clear()
+        self.removes.clear()
         while (item := self._column.takeAt(0)) is not None:
             if (shown := item.widget()) is not None and shown is not self.problem:
                 shown.hide()
