@@ -9,7 +9,7 @@ from collections.abc import Sequence
 
 from PySide6.QtCore import QObject, Signal
 
-CHILD = (sys.executable, "-m", "rescue_planner.kernels.warm")
+CHILD = (sys.executable, "-m", "rescue_planner.kernels.warm", "chain")
 
 
 class KernelLoader(QObject):

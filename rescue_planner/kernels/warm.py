@@ -1,4 +1,4 @@
-"""Compile every kernel once, on small arrays: `python -m rescue_planner.kernels.warm`.
+"""Compile every kernel once, on small arrays: `python -m rescue_planner.kernels.warm [chain]`.
 
 The desk starts this as a low-priority child, so that compiling never holds up the window.
 """
@@ -6,6 +6,7 @@ The desk starts this as a low-priority child, so that compiling never holds up t
 from __future__ import annotations
 
 import os
+import sys
 
 import numpy as np
 from numpy.typing import NDArray
@@ -129,4 +130,4 @@ def lower_priority() -> None:
 
 if __name__ == "__main__":
     lower_priority()
-    warm()
+    warm_chain() if sys.argv[1:] == ["chain"] else warm()
