@@ -209,8 +209,8 @@ def _lethals(_case: Case, _path: str, answers: Answers) -> Worked:
         Quantity.model_validate(
             {**value, "origin": "borrowed", "source": f"{_source(answers)}; {both}; covers {span}"}
         ),
-        f"{both}, covering {span}: at F = 0.125 survival is {at[0]:.1f} %, at F = 0.25 "
-        f"{at[1]:.1f} % of outbred. Does this look right?{_WHOLE[str(answers['span'])]}",
+        f"{both}, covering {span}: survival is {at[0]:.1f} % of that of outbred animals at F = "
+        f"0.125 and {at[1]:.1f} % at F = 0.25. Does this look right?{_WHOLE[str(answers['span'])]}",
     )
 
 

@@ -111,7 +111,7 @@ def test_that_both_conventions_and_the_span_are_echoed_with_the_curve(case) -> N
     assert "3.5 haploid = 7 diploid lethal equivalents, covering survival to maturity" in found.said
     # exp(-3.5 F): Morton, Crow & Muller 1956
     assert f"{100 * math.exp(-3.5 * 0.125):.1f} %" in found.said
-    assert "41.7 % of outbred" in found.said
+    assert "41.7 % at F = 0.25" in found.said
     assert "covers survival to maturity" in found.value.source
 
 
