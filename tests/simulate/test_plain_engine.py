@@ -372,6 +372,26 @@ def test_that_weather_has_the_moments_and_the_rank_correlation_given():
     assert order[0] == order[1] == order[2]  # one draw for all classes
 
 
+class Given:
+    """A stream of given normals."""
+
+    def __init__(self, *normals):
+        self.normals = list(normals)
+
+    def gauss(self, mean, sd):
+        return mean + sd * self.normals.pop(0)
+
+
+@pytest.mark.parametrize(("rho", "r"), [(1.0, 1.0), (0.0, 0.0), (0.6, 0.618033988749895)])
+def test_that_a_rank_correlation_becomes_the_normal_one_by_the_sine(rho, r):
+    # 2 sin(pi * .6 / 6) = 2 sin(18 degrees) = (sqrt(5) - 1)/2; to tell .6 from it by drawing
+    # would take some hundred thousand years.
+    raw = case(life={"yearly_sd": {"young": 0.5}, "survival_young_correlation": rho})
+    sky, _ = plain.Life(raw["life_cycle"], 1.0).weather(Given(1.0, 0.0))
+    sigma = math.sqrt(math.log(1.25))
+    assert (math.log(sky["young"]) + sigma**2 / 2.0) / sigma == pytest.approx(r, abs=1e-12)
+
+
 def test_that_a_spread_no_beta_has_is_refused():
     raw = case(life={"yearly_sd": {"adult": 0.4}})
     with pytest.raises(ValueError, match="no beta"):
@@ -907,6 +927,16 @@ def test_that_a_stop_waits_for_its_surveys_and_its_delay_then_holds():
     each = ruled(rule, releases=[release(1, 0, times=10)])
     # Read at 2000 (0), 2003 (3: held), 2006 (6: held); acts in 2007 before that year's release.
     assert [row["released"] for row in each.years] == [0, 1, 2, 3, 4, 5, 6, 7, 7, 7, 7]
+
+
+def test_that_surveys_must_find_it_one_after_the_other():
+    rule = {"name": "r", "when": "adults", "below": 10.0, "surveys": 2, "then": "stop"}
+    made = case(plan={"rules": [rule]}, time={"horizon_years": 0})
+    run, stopped = plain.run(made, "P")[0], []
+    for year, adults in enumerate([9, 11, 9, None, 9, 10, 9, 8], 2000):
+        run.rules(year, {"adults": adults})
+        stopped.append(run.stopped)
+    assert stopped == [False] * 7 + [True]
 
 
 def test_that_a_rule_releases_at_most_so_often():
