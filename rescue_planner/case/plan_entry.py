@@ -156,7 +156,9 @@ class _Trial:
             return text, ""
         if len(near) == 1:
             return near[0], ""
-        known = ", ".join(f"“{name}”" for name in names) or "none is entered yet"
+        if not names:
+            return text, "No donor is entered yet: add one on the Case page."
+        known = ", ".join(f"“{name}”" for name in names)
         return text, f"There is no donor “{text}”: write one of {known}."
 
     # all that can go in

@@ -221,6 +221,19 @@ def test_that_rows_are_removed_whole_or_not(page, desk, table):
     assert len(releases(desk)) == 2
 
 
+def test_that_without_a_donor_a_row_is_refused_and_a_pasted_one_is_held(qtbot, page, desk):
+    raw = json.loads(MARSH.read_text(encoding="utf-8"))
+    plans = [{"name": "No releases"}, {"name": "Try"}]
+    desk.document.new(read_case({**raw, "donors": [], "loci": [], "targets": [], "plans": plans}))
+    grid = page.editor.grid
+    qtbot.keyClick(grid.table, Qt.Key.Key_Insert)
+    assert "No donor is entered yet" in grid.said.text()
+    QGuiApplication.clipboard().setText(write_block(block(1)))
+    qtbot.keyClick(grid.table, Qt.Key.Key_V, CONTROL)
+    assert grid.model.rows[0][DONOR] == "North Fell"
+    assert "No donor is entered yet" in grid.model.why[0, DONOR]
+
+
 def test_that_the_grid_is_a_proper_model(page, qtmodeltester):
     page.editor.grid.model.put({(1, YEAR): "2040"})
     qtmodeltester.check(page.editor.grid.model, force_py=True)

@@ -33,7 +33,7 @@ from rescue_planner.desk.plan_editor.blocks import (
 from rescue_planner.desk.plan_editor.differs import Differs
 from rescue_planner.desk.plan_editor.feasible import Feasible
 from rescue_planner.desk.plan_editor.pieces import Do, column_of, signature_of
-from rescue_planner.desk.plan_editor.release_grid import ReleaseGrid
+from rescue_planner.desk.plan_editor.release_grid import NO_DONOR, ReleaseGrid
 from rescue_planner.desk.plan_editor.sentence import Block
 from rescue_planner.desk.plan_editor.tab_order import reached
 from rescue_planner.desk.plan_editor.timeline import SHORT_HELP, Timeline
@@ -42,7 +42,6 @@ from rescue_planner.projection.plan_reading import fate_words, limit_sentences
 
 MakePart = Callable[[Case, str], Edit]
 AddButton = tuple[type[Block], str, MakePart, str]  # kind, words, what it adds, reason why not
-NO_DONOR = "No donor is entered yet: add one on the Case page."
 NOTHING_HERE = (
     "“No releases” is the plan of leaving things as they are. Every other plan is compared with "
     "it, so it holds nothing and stays."

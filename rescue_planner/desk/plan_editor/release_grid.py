@@ -26,6 +26,7 @@ SHORT_HELP = (
 EVENT_HELP = "A number changed here changes every event of its release."
 ROWS = ("a row a release", "a row an event")
 MOST_SAID = 6
+NO_DONOR = "No donor is entered yet: add one on the Case page."
 
 
 class ReleaseTable(CopyingTable):
@@ -236,8 +237,7 @@ class ReleaseGrid(QWidget):
         self.events.show_plan(case, index, plan)
         if same and chosen and self.model.rowCount() != count:
             self.table.go_to((max(0, at[0]), max(0, at[1])))
-        if not same:
-            self.say("")
+        self.say("")
         self._fit()
 
     def show_cell(self, row: int, column: int) -> None:
@@ -270,6 +270,9 @@ class ReleaseGrid(QWidget):
     def _add(self) -> None:
         """Add a release in the first year, and choose its row."""
         plan = self._plan
+        if not self._desk.document.case.donors:
+            self.say(NO_DONOR)
+            return
         problems: tuple[Problem, ...] = self._desk.document.try_edit(
             lambda case: new_parts.new_release(case, plan)
         )
