@@ -6,6 +6,7 @@ was changed in a few values is told by these values, one that has no likeness is
 
 from __future__ import annotations
 
+import operator
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from typing import Any
@@ -183,7 +184,7 @@ def _moved(index: int | None, by: int) -> int | None:
 def _aligned(here: Sequence[Part], there: Sequence[Part]) -> list[Pair]:
     rows, columns = len(here), len(there)
     cost = [[ALONE * (i + k) for k in range(columns + 1)] for i in range(rows + 1)]
-    apart = [[float(_changed(one, two)) for two in there] for one in here]
+    apart = _apart(here, there)
     for i in range(1, rows + 1):
         for k in range(1, columns + 1):
             both = cost[i - 1][k - 1] + apart[i - 1][k - 1]
@@ -201,6 +202,21 @@ def _aligned(here: Sequence[Part], there: Sequence[Part]) -> list[Pair]:
             i -= 1
             pairs.append((i, None))
     return pairs[::-1]
+
+
+def _apart(here: Sequence[Part], there: Sequence[Part]) -> list[list[float]]:
+    """Return in how many values each part of one list differs from each of the other."""
+    if not all(isinstance(one, Release) for one in (*here, *there)):
+        return [[float(_changed(one, two)) for two in there] for one in here]
+    mine, other = [_leaves(one) for one in here], [_leaves(two) for two in there]
+    return [[float(sum(map(operator.ne, one, two))) for two in other] for one in mine]
+
+
+def _leaves(part: Any) -> list[Any]:  # noqa: ANN401 - a part, or what it holds
+    """Return the values of a part in order, as plain tuples: quick to compare many times."""
+    if isinstance(part, Part):
+        return [x for name in type(part).model_fields for x in _leaves(getattr(part, name))]
+    return [tuple(part.__dict__.values()) if isinstance(part, Quantity) else part]
 
 
 def _changed(one: Any, two: Any) -> int:  # noqa: ANN401 - parts, or what they hold
