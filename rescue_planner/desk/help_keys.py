@@ -17,6 +17,7 @@ KEYS = (
     ("Ctrl+C on a chart or table", "Copy it as a table"),
     ("F2, Delete, Alt+Up, Alt+Down in the plans", "Rename, remove, move a plan"),
     ("Left, Right, +, −, Insert, Delete on the calendar", "Move, repeat, add, remove a release"),
+    ("Ctrl+V, Ctrl+D in the grid of releases", "Paste cells, fill down"),
     ("Ctrl+Z, Ctrl+Y", "Undo, redo"),
     ("Ctrl+N, Ctrl+O, Ctrl+S", "New case, open, save"),
     ("Ctrl+Shift+S, Ctrl+E", "Save as, export"),
