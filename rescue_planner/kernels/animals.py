@@ -201,27 +201,32 @@ def genotype(one: np.uint64, two: np.uint64, locus: int) -> int:
 
 
 @inner
+def fitness(plan: Plan, one: np.uint64, two: np.uint64) -> float:
+    """Return the product of fitness over the tracked loci of two gametes."""
+    product = 1.0
+    for i in range(plan.fitness.shape[0]):
+        product *= plan.fitness[i, genotype(one, two, i)]
+    return product
+
+
+@inner
 def set_scales(plan: Plan, herd: Herd) -> None:
     """Set what costs and fitness are multiplied by, so that the start (or the best) counts 1."""
-    loci = plan.fitness.shape[0]
     herd.weather[SCALE_FIRST] = herd.weather[SCALE_MOTHER] = 1.0
-    for i in range(loci):
-        best = max(plan.fitness[i, 0], plan.fitness[i, 1], plan.fitness[i, 2])
-        herd.weather[SCALE_LOCI + i] = 1.0 / best if best > 0.0 else 0.0
+    best = 1.0
+    for i in range(plan.fitness.shape[0]):
+        best *= max(plan.fitness[i, 0], plan.fitness[i, 1], plan.fitness[i, 2])
+    herd.weather[SCALE_LOCI] = 1.0 / best if best > 0.0 else 0.0
     adults = plan.numbers[0, FEMALE, 1] + plan.numbers[0, MALE, 1]
     if plan.rates[0, HERE_NOW] == 0.0 or adults == 0:
         return
-    first, mother = 0.0, 0.0
+    first, mother, loci = 0.0, 0.0, 0.0
     for at in range(adults):
         slot = herd.order[at]
         f = 2.0 * herd.kin[slot, slot] - 1.0
         first += cost_factor(plan.rates[0, LETHAL_FIRST], f)
         mother += cost_factor(plan.rates[0, LETHAL_YOUNG], f)
+        loci += fitness(plan, herd.loci[slot, 0], herd.loci[slot, 1])
     herd.weather[SCALE_FIRST] = adults / first
     herd.weather[SCALE_MOTHER] = adults / mother
-    for i in range(loci):
-        total = 0.0
-        for at in range(adults):
-            slot = herd.order[at]
-            total += plan.fitness[i, genotype(herd.loci[slot, 0], herd.loci[slot, 1], i)]
-        herd.weather[SCALE_LOCI + i] = adults / total if total > 0.0 else 0.0
+    herd.weather[SCALE_LOCI] = adults / loci if loci > 0.0 else 0.0

@@ -66,7 +66,7 @@ def read_rules(plan: Plan, herd: Herd, year: int) -> None:
     """Let every rule look at the census as its survey sees it; stops first.
 
     One survey error is drawn for each rule and year, whether there is a survey or not. A rule acts
-    at each survey at which its condition has held `surveys` times running.
+    where its condition has held `surveys` times running; then the count begins anew.
     """
     for rule in range(plan.rules.shape[0]):
         error = normal(herd.streams, SURVEY) * plan.rules[rule, RULE_SD]
@@ -101,6 +101,7 @@ def act(plan: Plan, herd: Herd, year: int, rule: int) -> None:
         return
     if year >= herd.number[STOP_YEAR]:
         return
+    herd.acted[rule, 0] = 0
     if herd.acted[rule, 1] < int(plan.rules[rule, RULE_AT_MOST]):
         herd.acted[rule, 1] += 1
         if when < herd.due.shape[1]:
@@ -166,7 +167,10 @@ def let_go(plan: Plan, herd: Herd, year: int, row: int) -> int:
 
 @inner
 def flow_in(plan: Plan, herd: Herd, year: int) -> int:
-    """Bring in the animals of steady flow: Poisson in number, each sex with chance one half."""
+    """Bring in the animals of steady flow: Poisson in number, each sex with chance one half.
+
+    They are wanderers that leave their population anyway: the donor's numbers stay as they are.
+    """
     for row in range(plan.steady.shape[0]):
         coming = poisson(herd.streams, FLOW, plan.steady[row, FLOW_RATE])
         if not plan.steady[row, FLOW_FROM] <= year < plan.steady[row, FLOW_UNTIL]:
@@ -175,9 +179,7 @@ def flow_in(plan: Plan, herd: Herd, year: int) -> int:
         for _ in range(coming):
             sex = FEMALE if uniform(herd.streams, FLOW) < 0.5 else MALE
             age = int(plan.rates[0, FIRST_FEMALE + sex])
-            if not take_from(plan, herd, donor, sex, age):
-                herd.number[SHORT] += 1
-            elif bring(plan, herd, FLOW, donor, sex, age, 1.0) < 0:
+            if bring(plan, herd, FLOW, donor, sex, age, 1.0) < 0:
                 return FULL
     return DONE
 

@@ -33,9 +33,9 @@ from rescue_planner.kernels.herd import (
     COST_SO_FAR,
     DIED,
     DIED_SO_FAR,
+    DIVERSITY_GIVEN,
     DIVERSITY_KEPT,
     DIVERSITY_SCALE,
-    DIVERSITY_START,
     EFFECTIVE,
     EFFECTIVE_SO_FAR,
     FEMALE,
@@ -129,12 +129,10 @@ def read_genes(plan: Plan, herd: Herd, year: int, adults: int) -> None:
     present(herd.genome, herd.list_a, adults, plan.valid, herd.seen)
     if year == 0:
         find_rare(herd.genome, herd.list_a, adults, plan.place, RARE_BELOW, herd.rare)
-    start = herd.weather[DIVERSITY_START]
-    if year == 0:
-        start = herd.weather[DIVERSITY_START] = diversity
+    given = plan.rates[0, DIVERSITY_GIVEN]
     observed = observed_heterozygosity(herd.genome, herd.list_a, adults, markers)
     row[GENE_DIVERSITY] = diversity
-    row[DIVERSITY_KEPT] = diversity / start if start > 0.0 else np.nan
+    row[DIVERSITY_KEPT] = diversity / given if given > 0.0 else np.nan
     row[OBSERVED] = observed / plan.rates[0, DIVERSITY_SCALE]
     row[RARE_KEPT] = rare_left(herd.rare, herd.seen)
     row[INBREEDING] = mean_inbreeding(herd.kin, herd.list_a, adults)

@@ -53,8 +53,9 @@ STOP, RELEASE_THEN = 0, 1
     HAS_LIFE,  # 0 for a donor that is a number only
     NUMBER,  # its number then
     DIVERSITY_SCALE,  # c: marker diversity over that of the case
-) = range(28)
-RATES = 28
+    DIVERSITY_GIVEN,  # the case's own gene diversity of today
+) = range(29)
+RATES = 29
 
 # Rows of Plan.yearly.
 YEAR_CAPACITY, YEAR_FIRST_TIMES, YEAR_COST = 0, 1, 2
@@ -127,9 +128,11 @@ DAM, SIRE, YOUNG_SEX, KEPT = 0, 1, 2, 3
 NUMBERS = 20
 
 # Entries of Herd.weather: survival of the classes, factor on young, then constants of the
-# replicate: what the costs in the first year and of mothers are divided by, diversity at start.
+# replicate, by which costs in the first year, of mothers, and fitness at tracked loci (all loci
+# one factor) are multiplied; and the money spent so far.
 WEATHER_SURVIVAL, WEATHER_YOUNG = 0, 3
-SCALE_FIRST, SCALE_MOTHER, DIVERSITY_START, COST_SO_FAR, SCALE_LOCI = 4, 5, 6, 7, 8
+SCALE_FIRST, SCALE_MOTHER, SCALE_LOCI, COST_SO_FAR = 4, 5, 6, 7
+WEATHERS = 8
 
 # Columns of a census; then D of ancestry, D of donors' adults, L of allele frequencies.
 (
@@ -203,7 +206,7 @@ class Herd(NamedTuple):
     order: IntArray  # (S,): slots of the living, the longest here first
     free: IntArray  # (S,): a stack
     number: IntArray  # (NUMBERS,)
-    weather: FloatArray  # (8 + L,)
+    weather: FloatArray  # (WEATHERS,)
     young: IntArray  # (4, S)
     young_loci: Words  # (S, 2)
     list_a: IntArray  # (S,) room for lists

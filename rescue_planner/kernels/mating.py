@@ -11,7 +11,7 @@ import math
 
 import numpy as np
 
-from rescue_planner.kernels.animals import cost_factor, genotype
+from rescue_planner.kernels.animals import cost_factor, fitness
 from rescue_planner.kernels.draws import pick, poisson, shuffle
 from rescue_planner.kernels.genomes import pass_on_loci
 from rescue_planner.kernels.herd import (
@@ -105,10 +105,10 @@ def find_breeders(plan: Plan, herd: Herd) -> tuple[int, int]:
 
 @inner
 def draw_out(herd: Herd, count: int) -> int:
-    """Take one of the first `count` of `list_b` by weight and move it behind them; return it."""
+    """Take one of the first `count` of `list_b` by factor and move it behind them; return it."""
     total = 0.0
     for i in range(count):
-        total += herd.traits[WEIGHT, herd.list_b[i]]
+        total += herd.traits[FACTOR, herd.list_b[i]]
         herd.sums[i] = total
     i = pick(herd.streams, BREEDING, herd.sums, count)
     chosen: int = herd.list_b[i]
@@ -164,15 +164,11 @@ def make_pairs(plan: Plan, herd: Herd, mothers: int, males: int) -> int:
 
 @inner
 def hold_harems(plan: Plan, herd: Herd, males: int) -> int:
-    """Move the males that hold a harem to the front of `list_b`; return how many."""
+    """Put the males that hold a harem, drawn at random, first in `list_b`; return how many."""
     holders: int = min(males, max(1, math.floor(plan.rates[0, SHARE_OF_MALES] * males + 0.5)))
     if holders == males:
         return males
-    for left in range(males, males - holders, -1):
-        draw_out(herd, left)
-    for i in range(males // 2):
-        j = males - 1 - i
-        herd.list_b[i], herd.list_b[j] = herd.list_b[j], herd.list_b[i]
+    shuffle(herd.streams, BREEDING, herd.list_b, males)
     return holders
 
 
@@ -220,9 +216,7 @@ def one_young(plan: Plan, herd: Herd, dam: int, sire: int, survival: float) -> i
         one = mutated(plan, herd, pass_on_loci(herd.streams, GAMETES, herd.loci, dam))
         two = mutated(plan, herd, pass_on_loci(herd.streams, GAMETES, herd.loci, sire))
         herd.young_loci[at, 0], herd.young_loci[at, 1] = one, two
-        for i in range(plan.fitness.shape[0]):
-            w = plan.fitness[i, genotype(one, two, i)]
-            survival *= w * herd.weather[SCALE_LOCI + i]
+        survival *= fitness(plan, one, two) * herd.weather[SCALE_LOCI]
     if survival > 1.0:
         herd.number[CAPPED] += 1
     if uniform(herd.streams, FIRST_YEAR) >= survival:

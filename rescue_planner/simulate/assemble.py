@@ -234,6 +234,7 @@ def assemble(world: World) -> Assembled:
     rates[0][herd.LETHAL_FIRST] = world.lethal_first_year
     rates[0][herd.LETHAL_YOUNG] = world.lethal_young
     rates[0][herd.DIVERSITY_SCALE] = markers.scale
+    rates[0][herd.DIVERSITY_GIVEN] = world.diversity[0, 0]
     chromosomes, ends = _map(world)
     rules, more = _rule_rows(world)
     generation = world.generation_years
@@ -318,7 +319,7 @@ def room(plan: Plan, slots: int) -> Herd:
         order=whole(slots),
         free=whole(slots),
         number=whole(herd.NUMBERS),
-        weather=np.zeros(herd.SCALE_LOCI + plan.fitness.shape[0]),
+        weather=np.zeros(herd.WEATHERS),
         young=whole(4, slots),
         young_loci=bits(slots, 2),
         list_a=whole(slots),

@@ -101,13 +101,14 @@ def test_that_markers_and_pedigree_tell_one_story_with_releases(morgans):
         ("open", {"unequal_success": 1.0}, 2 / 11),
         ("harems", {"share_of_males_breeding": 0.1}, 1.0),
         ("harems", {}, None),
+        ("pairs", {"unequal_success": 1.0}, 1 / 10),
     ],
 )
 def test_that_mating_forms_make_the_sibs_they_should(form, changes, same_father):
     one = life(last_age=1, survival=(1.0, 1.0, 1.0), mean_young=6.0, form=form, **changes)
     results = run(world(years=1, life=one, adults=20, adult_females=10, markers=1), 2500, 34)
     kin = results.of("kinship")[:, 1]
-    if same_father is None:  # every female with one of ten males: hers, or another's that chose him
+    if same_father is None:  # one mother: one male; two mothers: each one of ten
         same_father = 1 / 10 + 9 / 10 * 1 / 10
     # Young of one mother: 1/10. Weights are gamma, so shares are Dirichlet: (a+1)/(10a+1).
     assert near(kin, 0.125 * (1 / 10 + same_father))

@@ -208,7 +208,10 @@ def plain_rule(rule, seen, years):
             rule.below is None or value < rule.below
         )
         row = row + 1 if met and not np.isnan(value) else 0
-        if row >= rule.surveys and times < rule.at_most:
+        if row < rule.surveys:
+            continue
+        row = 0
+        if times < rule.at_most:
             times += 1
             acts[year + rule.delay_years] = acts.get(year + rule.delay_years, 0) + 1
     return {year: n for year, n in acts.items() if year < years}
