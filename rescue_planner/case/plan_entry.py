@@ -70,7 +70,8 @@ def put_texts(
     trial = _Trial(case, plan, read)
     rows = len(trial.releases)
     again = {cell: held.text for cell, held in sheet.held.items()}
-    for (r, c), text in {**again, **{k: v for k, v in texts.items() if k[0] < rows}}.items():
+    mine = {cell: text for cell, text in texts.items() if cell[0] < rows}
+    for (r, c), text in {**mine, **{k: v for k, v in again.items() if k not in mine}}.items():
         trial.change(r, c, text)
     drafts = [{c: held.text for c, held in draft.items()} for draft in sheet.drafts]
     for (r, c), text in sorted(texts.items()):
@@ -202,12 +203,9 @@ class _Trial:
         return found
 
     def _hold(self, row: int, why: Mapping[int, str]) -> bool:
-        """Hold back changed cells of a release: those named, else those beside them."""
+        """Hold back the changed cells of a release that are named."""
         changed = self.changes.get(row, {})
         named = {c: words for c, words in why.items() if c in changed}
-        if not named and changed and why:
-            words = next(iter(why.values()))
-            named = dict.fromkeys(changed, words)
         for c, words in named.items():
             del changed[c]
             self.held[row, c] = Held(self.typed[row, c], words)
@@ -225,13 +223,13 @@ class _Trial:
         return (row, column) if isinstance(row, int) else None
 
     def _row_by_row(self) -> None:
-        """Let rows in one after the other; hold back each that does not fit those before it."""
+        """Let rows in one after the other; hold back what does not fit what is in before it."""
         changes, new = self.changes, self.new
         self.changes, self.new = {}, []
         for r, values in changes.items():
             why = self._refusal({**self.changes, r: values}, [held[2] for held in self.new])
             if why:
-                self.held.update({(r, c): Held(self.typed[r, c], why) for c in values})
+                self._cell_by_cell(r, values)
             else:
                 self.changes[r] = values
         for order, texts, values in new:
@@ -240,6 +238,21 @@ class _Trial:
                 self._draft(order, texts, {_COUNT: why})
             else:
                 self.new.append((order, texts, values))
+
+    def _cell_by_cell(self, row: int, values: Values) -> None:
+        """Let cells of a release in one after the other, and those that were refused once more."""
+        held: dict[int, str] = {}
+        for c in (*values, *values):
+            mine = {**self.changes.get(row, {}), c: values[c]}
+            if c in self.changes.get(row, {}):
+                continue
+            why = self._refusal({**self.changes, row: mine}, [one[2] for one in self.new])
+            if why:
+                held[c] = why
+            else:
+                self.changes[row] = mine
+                held.pop(c, None)
+        self.held.update({(row, c): Held(self.typed[row, c], why) for c, why in held.items()})
 
     def _refusal(self, changes: Mapping[int, Values], new: Sequence[Values]) -> str:
         try:

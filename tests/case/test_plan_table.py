@@ -141,6 +141,16 @@ def test_that_a_change_beyond_the_limit_is_held_back_at_its_cell():
     assert "at most 8" in entry.sheet.held[0, FEMALES].why
 
 
+def test_that_a_held_text_stays_while_others_are_typed_and_goes_in_where_they_make_room():
+    wrong = put(fresh(), [["8"]], at=(0, FEMALES))  # beside 1 male: one too many
+    other = put(fresh(), [["3"]], at=(0, AGE), sheet=wrong.sheet)
+    assert other.sheet.held[0, FEMALES].text == "8"
+    room = put(other.edit.case, [["0"]], at=(0, MALES), sheet=other.sheet)
+    assert room.sheet.is_clean
+    who = room.edit.case.plan("Wave").releases[0].who
+    assert (who.females.best, who.males.best, who.age.best) == (8, 0, 3)
+
+
 def test_that_a_range_is_kept_by_a_plain_number_and_guards_it():
     path = "plans[1].releases[0].who.females"
     case = set_range(fresh(), path, 1, 4, origin="guessed").case

@@ -221,6 +221,17 @@ def test_that_rows_are_removed_whole_or_not(page, desk, table):
     assert len(releases(desk)) == 2
 
 
+def test_that_every_event_of_the_pattern_can_be_shown_as_a_row(page, table):
+    grid = page.editor.grid
+    grid.kind.setCurrentIndex(1)
+    assert grid.event_table.isVisibleTo(page)
+    assert not table.isVisibleTo(page)
+    assert [row.year for row in grid.events.rows] == [2027, 2031, 2035, 2039, 2043]
+    assert not grid.buttons["Paste"].isEnabled()
+    grid.show_cell(0, FEMALES)
+    assert table.isVisibleTo(page)
+
+
 def test_that_without_a_donor_a_row_is_refused_and_a_pasted_one_is_held(qtbot, page, desk):
     raw = json.loads(MARSH.read_text(encoding="utf-8"))
     plans = [{"name": "No releases"}, {"name": "Try"}]
