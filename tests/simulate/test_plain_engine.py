@@ -877,6 +877,15 @@ def test_that_money_and_newcomers_that_bred_add_up_from_the_year_after():
     assert [row["effective_migrants"] for row in each.years] == [0, 0, 3, 3, 6, 6]
 
 
+def test_that_newcomers_without_young_are_not_effective_and_a_later_release_saves_nothing():
+    plan = {"releases": [release(2, 0, first=2001), release(0, 2, first=2003)]}
+    recipient = {"adults": 10, "adult_females": 10}  # no male before 2003
+    each = plain.run(still(plan=plan, recipient=recipient, donors=["D"]), "P")[0]
+    assert [row["effective_migrants"] for row in each.years[:5]] == [0, 0, 0, 0, 4]
+    assert each.years[-1]["adult_males"] == 2
+    assert {row["persists"] for row in each.years} == {0}
+
+
 def test_that_a_ceiling_is_rounded_down_and_follows_the_actions_of_its_years():
     plan = {
         "other_actions": [
