@@ -161,7 +161,7 @@ def line_gone(each):
 
 
 def test_that_lines_of_females_end_as_a_branching_process():
-    runs = lines({}, females=2, years=10, replicates=1200)
+    runs = lines({}, females=2, years=10, replicates=900)
     assert_share([line_gone(r) for r in runs], 0.587124**2)
 
 
@@ -181,7 +181,7 @@ def test_that_ages_litters_and_shares_end_lines_as_the_age_structured_process():
         "young_per_breeding_female": {"counts": counts},
         "females_among_young": 0.6,
     }
-    runs = lines(life, females=2, years=6, replicates=1500)
+    runs = lines(life, females=2, years=6, replicates=1000)
     rates = {"first_year": 0.45, "subadult": 0.7, "adult": 0.75, "first": 2, "last": 5}
     litter = oracles.counted_litter({int(k): p for k, p in counts.items()})
     rates |= {"share": 0.7, "litter": litter, "females": 0.6}
@@ -200,7 +200,7 @@ def test_that_rates_on_a_schedule_act_in_their_own_years():
         {"what": "b", "year": 2002, "until_year": 2003, "first_year_survival_times": 0.0},
         {"what": "c", "year": 2004, "until_year": 2006, "first_year_survival_times": 0.5},
     ]
-    runs = lines({}, females=2, years=8, replicates=1200, plan={"other_actions": actions})
+    runs = lines({}, females=2, years=8, replicates=900, plan={"other_actions": actions})
     rates = {"first_year": 0.5, "subadult": 0.8, "adult": 0.8, "first": 1, "last": 60}
     rates |= {"share": 1.0, "litter": oracles.poisson_litter(1.0), "females": 0.5}
     assert_share([line_gone(r) for r in runs], oracles.gone_by(rates, 8, times)[0] ** 2)
@@ -219,7 +219,7 @@ def both_there(f, m):
     return f > 0 and m > 0 and f + m >= 3
 
 
-def chain_and_runs(life, skies, replicates=700, years=12, **changes):
+def chain_and_runs(life, skies, replicates=500, years=12, **changes):
     life = SMALL | {"fewest_adults": 3} | life
     made = case(
         recipient={"adults": 6, "adult_females": 3, "carrying_capacity": 7.9},
