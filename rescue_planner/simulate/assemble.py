@@ -16,6 +16,7 @@ from rescue_planner.simulate.founders import (
     founder_kinship,
     marker_model,
     stable_ages,
+    start_times,
     subadults,
     yearly_growth,
 )
@@ -221,7 +222,16 @@ def assemble(world: World) -> Assembled:
     """
     lives, donors = _lives(world), len(world.donors)
     last = max(life.last_age for life in lives if life is not None)
-    each = [np.zeros((2, last)) if life is None else stable_ages(life) for life in lives]
+    times = start_times(
+        world.life,
+        1.0 - float(world.diversity[0, 0]) / world.reference,
+        world.lethal_first_year,
+        world.lethal_young,
+    )
+    each = [
+        np.zeros((2, last)) if life is None else stable_ages(life, 1.0 if population else times)
+        for population, life in enumerate(lives)
+    ]
     ages = np.zeros((donors + 1, 2, last))
     for population, weights in enumerate(each):
         ages[population, :, : weights.shape[1]] = weights
@@ -231,6 +241,7 @@ def assemble(world: World) -> Assembled:
     ]
     kinship, own = founder_kinship(world.diversity, world.reference, world.kinship_among_released)
     markers = marker_model(world.diversity)
+    rates[0][herd.GROWTH] = yearly_growth(world.life, times)
     rates[0][herd.LETHAL_FIRST] = world.lethal_first_year
     rates[0][herd.LETHAL_YOUNG] = world.lethal_young
     rates[0][herd.DIVERSITY_SCALE] = markers.scale

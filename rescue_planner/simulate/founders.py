@@ -16,6 +16,7 @@ from numpy.typing import NDArray
 
 from rescue_planner.simulate.world import Life
 from rescue_planner.theory import life_table
+from rescue_planner.theory.inbreeding import survival_factor
 
 FloatArray = NDArray[np.float64]
 
@@ -95,10 +96,13 @@ def founder_kinship(
     return nearest_semidefinite(kinship), own
 
 
-def yearly_growth(life: Life) -> float:
-    """Return the yearly growth of a life cycle without crowding, inbreeding or bad years."""
+def yearly_growth(life: Life, births_times: float = 1.0) -> float:
+    """Return the yearly growth of a life cycle without crowding or bad years.
+
+    `births_times` is what inbreeding at the start leaves of births and first-year survival.
+    """
     matrix = life_table.female_matrix(
-        life.share_of_females_breeding * young_mean(life) * life.females_among_young,
+        life.share_of_females_breeding * young_mean(life) * life.females_among_young * births_times,
         *life.survival,
         first_breeding_age=life.first_breeding_age[0],
         last_age=life.last_age,
@@ -113,13 +117,23 @@ def young_mean(life: Life) -> float:
     return life.mean_young
 
 
-def stable_ages(life: Life) -> FloatArray:
+def start_times(life: Life, f: float, lethal_first_year: float, lethal_young: float) -> float:
+    """Return what inbreeding at the start leaves of births and first-year survival together.
+
+    1 where survival was measured here and now, since the given rates hold that cost already.
+    """
+    if life.here_now:
+        return 1.0
+    return float(survival_factor(max(0.0, f), lethal_first_year + lethal_young))
+
+
+def stable_ages(life: Life, births_times: float = 1.0) -> FloatArray:
     """Return weights of ages 1..last_age by sex, (2, last_age), in a population that grows evenly.
 
     Both sexes grow at the females' rate (stand still where none are born); survival below and
     above the first breeding age is that of each sex.
     """
-    growth = yearly_growth(life)
+    growth = yearly_growth(life, births_times)
     if growth <= 0.0:
         growth = 1.0
     out = np.ones((2, life.last_age))
